@@ -1,0 +1,1 @@
+"""Campaigns: alerts, tiles, claims, frames, and who watches them."""

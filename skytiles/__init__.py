@@ -1,0 +1,1 @@
+"""The science of searching a region of the sky: numpy in, numpy out."""

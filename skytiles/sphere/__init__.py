@@ -1,0 +1,1 @@
+"""Angles, vectors, HEALPix, and the doors to healpy and astropy."""

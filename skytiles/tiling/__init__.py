@@ -1,0 +1,1 @@
+"""Tile grids, footprints of frames, and the pixels under them."""

@@ -1,0 +1,1 @@
+"""The account of frames: what was imaged, what was searched, where it can still be."""

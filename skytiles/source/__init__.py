@@ -1,0 +1,1 @@
+"""What the light could do: brightness against time since the event, and its spread."""

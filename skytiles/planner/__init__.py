@@ -1,0 +1,1 @@
+"""Who should look where and when, and how far that is from the best possible."""

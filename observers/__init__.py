@@ -1,0 +1,1 @@
+"""People, their sites and their instruments."""

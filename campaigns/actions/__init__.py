@@ -1,0 +1,1 @@
+"""Use cases: one a file, each in one transaction."""

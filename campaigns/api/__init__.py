@@ -1,0 +1,1 @@
+"""The HTTP API: it translates, and decides nothing."""

@@ -1,0 +1,1 @@
+"""Typed, sequenced events and the state that they change."""

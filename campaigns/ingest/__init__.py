@@ -1,0 +1,1 @@
+"""What comes in: alert files and frame headers."""

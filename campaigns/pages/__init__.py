@@ -1,0 +1,1 @@
+"""Pages: the frames that browsers fill."""

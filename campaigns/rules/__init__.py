@@ -1,0 +1,1 @@
+"""Pure functions that judge plain values and return a list of problems."""

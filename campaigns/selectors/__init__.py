@@ -1,0 +1,1 @@
+"""Readers: they list and get, and guard what may be seen."""

@@ -1,0 +1,5 @@
+/** The Board. */
+
+import { startBoard } from "../ui/board/start_board.js";
+
+startBoard();

@@ -1,0 +1,5 @@
+/** The Log. */
+
+import { startLog } from "../ui/log/start_log.js";
+
+startLog();

@@ -9,10 +9,15 @@ import tempfile
 import time
 from pathlib import Path
 
+import hypothesis
 import pytest
 
 _NEEDED = ("browser", "postgresql", "redis")
 _skipped: list[str] = []
+
+# The same examples every time, and no time limit that a busy machine could break.
+hypothesis.settings.register_profile("steady", derandomize=True, deadline=None, database=None)
+hypothesis.settings.load_profile("steady")
 
 
 @pytest.hookimpl(wrapper=True)

@@ -24,7 +24,7 @@ LAPTOP = {"width": 1440, "height": 900}
 ROOT = Path(__file__).resolve().parents[2]
 
 
-@pytest.fixture(scope="session")
+@pytest.fixture(scope="package")
 def chromium():
     if not CHROMIUM.exists():
         pytest.skip("Chromium is not installed (Debian: apt install chromium)")
@@ -34,14 +34,14 @@ def chromium():
         browser.close()
 
 
-@pytest.fixture(scope="session")
+@pytest.fixture(scope="package")
 def world(tmp_path_factory):
     server = start_server(tmp_path_factory.mktemp("browser-data"))
     yield make_world(server.url, server.link_token)
     server.stop()
 
 
-@pytest.fixture(scope="session")
+@pytest.fixture(scope="package")
 def live_campaign(world):
     """A campaign for looking at pages, with a plan, a claim and a frame."""
     campaign = world.launch("Looking at pages")
@@ -83,7 +83,7 @@ def blank_page(chromium):
     page.close()
 
 
-@pytest.fixture(scope="session")
+@pytest.fixture(scope="package")
 def screenshots():
     """Where screenshots go: QUARTERSKY_SCREENSHOTS or .cache/screenshots."""
     folder = Path(os.environ.get("QUARTERSKY_SCREENSHOTS", ROOT / ".cache" / "screenshots"))

@@ -7,7 +7,8 @@ import pytest
 from tests.browser.conftest import LAPTOP, PHONE
 from tests.browser.world import COORDINATOR, OBSERVER, fits_frame, midnight_alert
 
-pytestmark = pytest.mark.browser
+# One worker: one server and one Chromium for all of them.
+pytestmark = [pytest.mark.browser, pytest.mark.xdist_group("browser")]
 
 
 def launch_on_the_page(page, world, title):

@@ -6,7 +6,8 @@ from tests.browser.conftest import LAPTOP, PHONE
 from tests.browser.pixels import read_colours, relative_luminance
 from tests.browser.world import COORDINATOR
 
-pytestmark = pytest.mark.browser
+# One worker: one server and one Chromium for all of them.
+pytestmark = [pytest.mark.browser, pytest.mark.xdist_group("browser")]
 
 PAGES = {
     "home": "/",

@@ -5,7 +5,8 @@ import pytest
 from tests.browser.conftest import LAPTOP
 from tests.browser.world import COORDINATOR, PASSWORD
 
-pytestmark = pytest.mark.browser
+# One worker: one server and one Chromium for all of them.
+pytestmark = [pytest.mark.browser, pytest.mark.xdist_group("browser")]
 
 
 def test_an_invitation_link_makes_an_account(world, open_screen):

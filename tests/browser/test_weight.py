@@ -8,7 +8,8 @@ import pytest
 from tests.browser.conftest import PHONE
 from tests.browser.world import COORDINATOR
 
-pytestmark = pytest.mark.browser
+# One worker: one server and one Chromium for all of them.
+pytestmark = [pytest.mark.browser, pytest.mark.xdist_group("browser")]
 BUDGET_BYTES = 150_000
 
 

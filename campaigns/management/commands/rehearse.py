@@ -33,7 +33,7 @@ PLAY_S = 150.0
 FAVOURITE_PORT = 8000
 FAILURES = (ServerFailed, ServerFault, Disagreement, Refusal, TimeoutError, httpx.HTTPError)
 MOST_OBSERVERS, MOST_HOURS = 2000, 72
-EXIT_BAD_INPUT, EXIT_FAILED = 2, 1
+EXIT_FAILED, EXIT_BAD_INPUT, EXIT_INTERRUPTED = 1, 2, 130
 
 
 class Command(BaseCommand):
@@ -69,7 +69,8 @@ class Command(BaseCommand):
         except FAILURES as failure:
             self._fail(asked, EXIT_FAILED, _failed(failure))
         except KeyboardInterrupt:
-            _say("stopped")
+            _say("stopped before its end: there are no numbers")
+            sys.exit(EXIT_INTERRUPTED)
 
     def _rehearse(self, asked: dict[str, Any]) -> None:
         folder = new_folder(settings.DATA / "rehearsals", seed=asked["seed"])
@@ -154,8 +155,12 @@ def _pick_port(asked: dict[str, Any]) -> int:
 def _keep_serving(server: RehearsalServer, outcome: Outcome) -> None:
     _say(f"the board stays at {server.url}/c/{outcome.campaign}/ until Ctrl-C")
     _say(f'to go on as coordinator sign in as "{COORDINATOR_NAME}" with {outcome.password}')
-    while server.is_running:
-        time.sleep(0.5)
+    try:
+        while server.is_running:
+            time.sleep(0.5)
+    except KeyboardInterrupt:
+        _say("stopped")
+        return
     raise ServerFailed("the server has ended by itself")
 
 

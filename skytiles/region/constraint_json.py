@@ -1,10 +1,17 @@
 """Constraints from the JSON of an alert."""
 
-import math
 from collections.abc import Callable, Mapping
 from typing import Any
 
-from skytiles.errors import AlertError
+from skytiles.errors import AlertError, MapFileError
+from skytiles.region.area_json import (
+    MOC_FIELDS,
+    POLYGON_FIELDS,
+    area_note,
+    moc_constraint,
+    polygon_constraint,
+)
+from skytiles.region.arrival_times_json import ARRIVAL_TIMES_FIELDS, arrival_times_from_json
 from skytiles.region.constraints import (
     DEFAULT_CONTAINMENT,
     AnyConstraint,
@@ -13,7 +20,14 @@ from skytiles.region.constraints import (
     MapConstraint,
     unknown_type_error,
 )
+from skytiles.region.json_numbers import number_from
 from skytiles.region.read_map import read_sky_map
+from skytiles.region.target_json import (
+    DISTANCE_FIELDS,
+    TARGETS_FIELDS,
+    distance_constraint,
+    target_list_constraint,
+)
 
 # Gives the bytes of a map file that an alert names.
 MapOpener = Callable[[str], bytes]
@@ -24,6 +38,18 @@ _FIELDS = {
     "cone": _SHARED | {"radius_deg"},
     "ellipse": _SHARED | {"semi_major_deg", "semi_minor_deg", "position_angle_deg"},
     "map": {"type", "file"},
+    "arrival times": ARRIVAL_TIMES_FIELDS,
+    "moc": MOC_FIELDS,
+    "polygon": POLYGON_FIELDS,
+    "targets": TARGETS_FIELDS,
+    "distance": DISTANCE_FIELDS,
+}
+# Readers of those that need nothing but their fields.
+_READERS: dict[str, Callable[[Mapping[str, Any]], AnyConstraint]] = {
+    "arrival times": arrival_times_from_json,
+    "polygon": polygon_constraint,
+    "targets": target_list_constraint,
+    "distance": distance_constraint,
 }
 
 
@@ -34,29 +60,33 @@ def constraint_from_json(
 
     Parameters
     ----------
-    fields : dict    {"type": "cone" | "ellipse" | "map", ...} as in DEVELOPERS.md
+    fields : dict    {"type": "cone" | "ellipse" | "map" | ..., ...} (fixtures/alert.schema.json)
     open_map : function of a file name, or None    where maps may be named, gives their bytes
 
     Returns
     -------
-    ConeConstraint, EllipseConstraint or MapConstraint    AlertError else
+    AnyConstraint    AlertError else
 
     Source: our own JSON.
     """
     if not isinstance(fields, Mapping):
-        raise _shape_error(f"a constraint that is {type(fields).__name__}")
+        raise _shape_error(f"it has a constraint that is {type(fields).__name__}")
     kind = fields.get("type")
     if not isinstance(kind, str) or kind not in _FIELDS:
         raise unknown_type_error(kind)
     unknown = sorted(str(name) for name in set(fields) - _FIELDS[kind])
     if unknown:
         raise AlertError(
-            given=f"unknown fields in a {kind}: {', '.join(unknown)}",
-            allowed=", ".join(sorted(_FIELDS[kind])),
+            given=f"its {kind} has unknown fields ({', '.join(unknown)[:200]})",
+            allowed=f"the fields {', '.join(sorted(_FIELDS[kind]))}",
             advice="correct the spelling or take them out; nothing is ignored silently",
         )
+    if kind in _READERS:
+        return _READERS[kind](fields)
     if kind == "map":
         return _map(fields, open_map)
+    if kind == "moc":
+        return moc_constraint(fields, open_map=open_map)
     return _cone(fields) if kind == "cone" else _ellipse(fields)
 
 
@@ -73,12 +103,14 @@ def containment_note(fields: Mapping[str, Any]) -> str | None:
 
     Source: our own.
     """
-    if fields.get("type") == "map" or "containment" in fields:
+    kind = fields.get("type")
+    if "containment" in fields:
         return None
-    return (
-        f"The {fields.get('type')} does not say what its radius holds; "
-        "68 % (1.515 sigma) was assumed."
-    )
+    if kind in ("moc", "polygon"):
+        return area_note(str(kind))
+    if kind not in ("cone", "ellipse"):
+        return None
+    return f"The {kind} does not say what its radius holds; 68 % (1.515 sigma) was assumed."
 
 
 def _shape_error(given: str) -> AlertError:
@@ -87,40 +119,6 @@ def _shape_error(given: str) -> AlertError:
         allowed='an object such as {"type": "cone", "ra_deg": 266.4, ...}',
         advice="compare with the example alerts in fixtures/alerts",
     )
-
-
-def number_from(
-    fields: Mapping[str, Any],
-    name: str,
-    *,
-    least: float,
-    most: float,
-    default: float | None = None,
-) -> float:
-    """A number of a JSON object within bounds.
-
-    Parameters
-    ----------
-    fields : dict    the object
-    name : str    which number
-    least, most : float    bounds, included
-    default : float or None    when it is missing; None: it must be there
-
-    Returns
-    -------
-    float    AlertError when it is missing, no number or out of bounds
-
-    Source: our own.
-    """
-    value = fields.get(name, default)
-    is_number = isinstance(value, (int, float)) and not isinstance(value, bool)
-    if not is_number or not math.isfinite(value) or not least <= value <= most:
-        raise AlertError(
-            given=f"{name} = {value!r}" if name in fields else f"no {name}",
-            allowed=f"a number from {least:g} to {most:g}",
-            advice=f"correct {name}; all angles are in degrees",
-        )
-    return float(value)
 
 
 def _position(fields: Mapping[str, Any]) -> dict[str, float]:
@@ -148,7 +146,7 @@ def _ellipse(fields: Mapping[str, Any]) -> EllipseConstraint:
     major, minor = _radius(fields, "semi_major_deg"), _radius(fields, "semi_minor_deg")
     if minor > major:
         raise AlertError(
-            given=f"semi_minor_deg {minor:g} above semi_major_deg {major:g}",
+            given=f"its semi_minor_deg {minor:g} is above its semi_major_deg {major:g}",
             allowed="the longer half axis as semi_major_deg",
             advice="exchange the two; position_angle_deg is that of the longer one",
         )
@@ -165,14 +163,18 @@ def _map(fields: Mapping[str, Any], open_map: MapOpener | None) -> MapConstraint
     name = fields.get("file")
     if not isinstance(name, str) or not name or "/" in name or "\\" in name or "\0" in name:
         raise AlertError(
-            given=f"file = {name!r}",
+            given=f"it names the map file {name!r}"[:300],
             allowed="the plain name of a map file beside the alert",
             advice="put the map in the same folder and name it without a path",
         )
     if open_map is None:
         raise AlertError(
-            given=f"an alert that names the map file {name!r}",
+            given=f"it names the map file {name!r}, which is not here"[:300],
             allowed="an alert that stands alone",
             advice="give the map file itself instead of the alert",
         )
-    return MapConstraint(sky_map=read_sky_map(open_map(name)), file=name)
+    try:
+        return MapConstraint(sky_map=read_sky_map(open_map(name)), file=name)
+    except MapFileError as error:
+        error.about(name)
+        raise

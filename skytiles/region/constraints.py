@@ -1,56 +1,21 @@
 """Pieces of direction information: sky map, cone, ellipse."""
 
 from dataclasses import dataclass, field
-from typing import Any, ClassVar
+from typing import Any, ClassVar, get_args
 
 import numpy as np
 from numpy.typing import NDArray
 
 from skytiles.errors import AlertError
+from skytiles.region.areas import MocConstraint, PolygonConstraint
+from skytiles.region.arrival_times import ArrivalTimesConstraint
+from skytiles.region.containment import DEFAULT_CONTAINMENT, chords_deg, radius_in_sigmas
+from skytiles.region.distance import DistanceConstraint
 from skytiles.region.sky_map import SkyMap
+from skytiles.region.targets import TargetListConstraint
 from skytiles.sphere.angles import position_angles_deg, separations_deg
 
 Floats = NDArray[np.float64]
-
-# What a radius holds when a message does not say: one sigma of a two-dimensional Gaussian's
-# radius in common usage, 68.27 %, which messages shorten to 0.68.
-DEFAULT_CONTAINMENT = 0.68
-_ONE_SIGMA = 0.682689492
-
-
-def radius_in_sigmas(containment: float) -> float:
-    """Radius that holds a share of a round two-dimensional Gaussian.
-
-    Parameters
-    ----------
-    containment : float    0..1, ends excluded; 0.68 is read as the usual 68.27 %
-
-    Returns
-    -------
-    float    in units of sigma: 1.515 for 68 %, 2.146 for 90 %
-
-    Source: integral of the Gaussian, sqrt(-2 ln(1 - containment)).
-    """
-    is_usual = abs(containment - DEFAULT_CONTAINMENT) < 0.005
-    share = _ONE_SIGMA if is_usual else containment
-    return float(np.sqrt(-2.0 * np.log1p(-share)))
-
-
-def chords_deg(separations: Floats | float) -> Floats:
-    """Chords of angular separations, the radius of an equal-area map of the sky.
-
-    Parameters
-    ----------
-    separations : (n,) float    degrees, 0..180
-
-    Returns
-    -------
-    (n,) float    2 sin(s / 2) in degrees; a Gaussian of it keeps its stated containment on the
-    whole sphere, where one of the separation itself would not
-
-    Source: Lambert's azimuthal equal-area projection.
-    """
-    return np.asarray(np.rad2deg(2.0 * np.sin(np.deg2rad(separations) / 2.0)))
 
 
 @dataclass(frozen=True)
@@ -150,7 +115,12 @@ class MapConstraint:
         return {"type": self.kind, "file": self.file}
 
 
-AnyConstraint = MapConstraint | ConeConstraint | EllipseConstraint
+# What is given as cells, and all that says where the source is by itself. A target list needs the
+# smooth prior beside it, and a distance says nothing about the direction.
+MapLike = MapConstraint | MocConstraint | PolygonConstraint
+Directional = MapLike | ConeConstraint | EllipseConstraint | ArrivalTimesConstraint
+AnyConstraint = Directional | TargetListConstraint | DistanceConstraint
+CONSTRAINT_KINDS = tuple(sorted(one.kind for one in get_args(AnyConstraint)))
 
 
 def unknown_type_error(given: object) -> AlertError:
@@ -167,7 +137,7 @@ def unknown_type_error(given: object) -> AlertError:
     Source: our own.
     """
     return AlertError(
-        given=f"a constraint of type {given!r}",
-        allowed='"cone", "ellipse" or "map"',
+        given=f"it has a constraint of type {given!r}",
+        allowed="one of " + ", ".join(f'"{kind}"' for kind in CONSTRAINT_KINDS),
         advice="write the direction as one of these, or take the constraint out",
     )

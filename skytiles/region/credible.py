@@ -70,12 +70,14 @@ def peak_deg(sky_map: SkyMap) -> tuple[float, float]:
     """
     densities = sky_map.densities
     best = np.flatnonzero(densities >= densities.max() * (1.0 - _SAME_DENSITY))
-    vectors = [
-        pixel_vectors(int(order), [pixel])[0]
-        for order, pixel in zip(sky_map.orders[best][:64], sky_map.pixels[best][:64], strict=True)
-    ]
-    middle = np.sum(vectors, axis=0)
-    # Equal peaks far apart have no middle: take the first.
-    is_spread = np.linalg.norm(middle) < 0.999 * len(vectors)
-    ra, dec = ras_decs_deg(vectors[0] if is_spread else middle)
+    orders, pixels = sky_map.orders[best], sky_map.pixels[best]
+    sizes = 4.0 ** -orders.astype(np.float64)
+    middle = np.zeros(3)
+    for order in np.unique(orders):
+        middle += sizes[orders == order][0] * pixel_vectors(order, pixels[orders == order]).sum(0)
+    # Equal peaks far apart have no middle: take the largest cell, of those the first.
+    largest = int(np.argmin(orders))
+    is_spread = np.linalg.norm(middle) < 0.999 * sizes.sum()
+    alone = pixel_vectors(int(orders[largest]), pixels[largest : largest + 1])[0]
+    ra, dec = ras_decs_deg(alone if is_spread else middle)
     return float(ra), float(dec)

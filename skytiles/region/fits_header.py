@@ -71,7 +71,7 @@ def read_header(data: bytes | memoryview, begin: int) -> HeaderBlock:
             return HeaderBlock(cards, begin + _whole_blocks(place + _CARD_BYTES - begin))
         if card[8:10] == "= ":
             cards[keyword] = _value(card[10:])
-    raise truncated_error(f"a file of {len(data)} bytes whose header has no END")
+    raise truncated_error(f"its header has no END within {len(data)} bytes")
 
 
 def _whole_blocks(n_bytes: int) -> int:
@@ -163,7 +163,7 @@ def whole_number(cards: Header, keyword: str, *, least: int = 0, most: int = 1 <
     value = cards.get(keyword)
     if isinstance(value, bool) or not isinstance(value, int) or not least <= value <= most:
         raise MapFileError(
-            given=f"{keyword} = {value!r} in the header",
+            given=f"its header says {keyword} = {value!r}",
             allowed=f"a whole number from {least} to {most}",
             advice="fetch the file again; its header is damaged",
         )

@@ -59,7 +59,7 @@ class FitsTable:
         column = self._columns[name]
         if column.letter not in _DTYPES:
             raise MapFileError(
-                given=f"column {name} of type {column.letter}",
+                given=f"its column {name} is of type {column.letter}",
                 allowed="numbers (FITS types B, I, J, K, E, D)",
                 advice="write the map again with a numeric column",
             )
@@ -88,7 +88,7 @@ class FitsTable:
         zero = self.header.get(f"TZERO{number}", 0.0)
         if isinstance(scale, str) or isinstance(zero, str):
             raise MapFileError(
-                given=f"TSCAL{number} = {scale!r}, TZERO{number} = {zero!r}",
+                given=f"its header says TSCAL{number} = {scale!r}, TZERO{number} = {zero!r}",
                 allowed="numbers",
                 advice="fetch the file again; its header is damaged",
             )
@@ -114,7 +114,7 @@ def read_table(data: bytes) -> FitsTable:
     """
     if not data.startswith(SIGNATURE):
         raise MapFileError(
-            given=f"a file that begins with {data[:12]!r}",
+            given=f"it begins with {data[:12]!r}",
             allowed="a FITS file, which begins with 'SIMPLE  ='",
             advice="choose the map file itself, not a page or a picture of it",
         )
@@ -127,7 +127,7 @@ def read_table(data: bytes) -> FitsTable:
         if begin >= len(data):
             break
     raise MapFileError(
-        given="a FITS file without a binary table",
+        given="it has no binary table",
         allowed="a HEALPix map in a binary table (a column UNIQ or PROB)",
         advice="choose the sky map of the alert; an image of the sky cannot be read as one",
     )
@@ -137,7 +137,7 @@ def _table(view: memoryview, cards: Header, data_begin: int) -> FitsTable:
     n_bytes = whole_number(cards, "NAXIS1") * whole_number(cards, "NAXIS2")
     rows = view[data_begin : data_begin + n_bytes]
     if len(rows) < n_bytes:
-        raise truncated_error(f"a table of {n_bytes} bytes of which {len(rows)} are there")
+        raise truncated_error(f"of the {n_bytes} bytes of its table {len(rows)} are there")
     columns = _columns(cards)
     return FitsTable(cards, rows, columns)
 
@@ -153,7 +153,7 @@ def _columns(cards: Header) -> dict[str, _Column]:
         offset += -(-repeat // 8) if letter == "X" else repeat * _WIDTHS[letter]
     if offset != whole_number(cards, "NAXIS1"):
         raise MapFileError(
-            given=f"columns of {offset} bytes in rows of {cards['NAXIS1']}",
+            given=f"its columns take {offset} bytes and its rows {cards['NAXIS1']}",
             allowed="columns that fill the row",
             advice="fetch the file again; its header is damaged",
         )
@@ -165,7 +165,7 @@ def _form(cards: Header, number: int) -> tuple[str, int]:
     match = _TFORM.match(form)
     if match is None:
         raise MapFileError(
-            given=f"TFORM{number} = {form!r}",
+            given=f"its header says TFORM{number} = {form!r}",
             allowed="a FITS column format such as 'D' or '1024E'",
             advice="fetch the file again; its header is damaged",
         )

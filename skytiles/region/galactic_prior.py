@@ -15,10 +15,11 @@ from skytiles.sphere.galactic import galactic_vectors
 
 Floats = NDArray[np.float64]
 
-# Nodes on each smooth piece of a line of sight.
-_N_NODES = 24
+# Gaussian quadrature on each smooth piece of a line of sight.
+_NODES, _WEIGHTS = np.polynomial.legendre.leggauss(24)
 _SCALE_HEIGHTS = 30.0
-_CHUNK = 20_000
+# Small enough for the processor's cache.
+_CHUNK = 1_024
 
 
 @dataclass(frozen=True)
@@ -45,6 +46,10 @@ class GalacticPrior:
     sun_radius_kpc: float = 8.7
     sun_height_kpc: float = 0.024
     edge_kpc: float = 15.0
+    # Dust: the same double exponential, scaled to the extinction from here to the centre.
+    dust_scale_kpc: float = 2.9
+    dust_height_kpc: float = 0.110
+    centre_extinction_mag: float = 30.0
     clouds: tuple[Cloud, ...] = (
         Cloud(80.9, -69.8, 50.0, weight=0.05, sigma_deg=2.0),
         Cloud(13.2, -72.8, 62.0, weight=0.02, sigma_deg=1.0),
@@ -64,12 +69,16 @@ class GalacticPrior:
 
         Source: Adams et al. 2013, ApJ 778, 164, section 2.
         """
-        disc_weight = 1.0 - self.floor - sum(cloud.weight for cloud in self.clouds)
         disc = self.column_densities_kpc3(ras_deg, decs_deg) / self.disc_integral_kpc3()
-        total = self.floor + disc_weight * 4.0 * np.pi * disc
+        total = self.floor + self.disc_weight * 4.0 * np.pi * disc
         for cloud in self.clouds:
-            total = total + _cloud_densities(cloud, ras_deg, decs_deg)
+            total = total + cloud_densities(cloud, ras_deg, decs_deg)
         return np.asarray(total)
+
+    @property
+    def disc_weight(self) -> float:
+        """Share of all sources that are in the disc."""
+        return 1.0 - self.floor - sum(cloud.weight for cloud in self.clouds)
 
     def column_densities_kpc3(self, ras_deg: Floats, decs_deg: Floats) -> Floats:
         """Integral of density x r^2 dr along lines of sight, per steradian.
@@ -92,13 +101,12 @@ class GalacticPrior:
         return np.concatenate(parts) if parts else np.zeros(0)
 
     def _columns(self, directions: Floats) -> Floats:
-        nodes, weights = np.polynomial.legendre.leggauss(_N_NODES)
         total = np.zeros(len(directions))
         for first, last in pairwise(self._breaks_kpc(directions)):
             half = 0.5 * (last - first)[:, None]
-            distances = first[:, None] + half * (nodes + 1.0)
+            distances = first[:, None] + half * (_NODES + 1.0)
             integrand = self.densities_at(directions, distances) * distances**2
-            total += (integrand * half) @ weights
+            total += (integrand * half) @ _WEIGHTS
         return total
 
     def _breaks_kpc(self, directions: Floats) -> list[Floats]:
@@ -158,7 +166,20 @@ class GalacticPrior:
         return float(4.0 * np.pi * self.disc_scale_kpc**2 * self.disc_height_kpc * share)
 
 
-def _cloud_densities(cloud: Cloud, ras_deg: Floats, decs_deg: Floats) -> Floats:
+def cloud_densities(cloud: Cloud, ras_deg: Floats, decs_deg: Floats) -> Floats:
+    """Sources of a cloud per share of the sky.
+
+    Parameters
+    ----------
+    cloud : Cloud    a round Gaussian
+    ras_deg, decs_deg : (n,) float    degrees
+
+    Returns
+    -------
+    (n,) float    no unit; its mean over the sky is the cloud's weight
+
+    Source: our own.
+    """
     distances = separations_deg(cloud.ra_deg, cloud.dec_deg, ras_deg, decs_deg)
     variance_rad2 = np.deg2rad(cloud.sigma_deg) ** 2
     gaussian = np.exp(-0.5 * np.deg2rad(distances) ** 2 / variance_rad2)

@@ -6,12 +6,22 @@ import numpy as np
 from numpy.typing import NDArray
 
 from skytiles.errors import RegionError
-from skytiles.region.constraints import AnyConstraint, MapConstraint
+from skytiles.region.areas import MocConstraint, PolygonConstraint
+from skytiles.region.arrival_times import ArrivalTimesConstraint
+from skytiles.region.constraints import (
+    AnyConstraint,
+    ConeConstraint,
+    Directional,
+    EllipseConstraint,
+    MapConstraint,
+)
 from skytiles.region.credible import credible_areas_deg2, densest_first, peak_deg
+from skytiles.region.distance import DistanceConstraint
 from skytiles.region.galactic_prior import GalacticPrior
-from skytiles.region.mesh import COARSER_ORDER, is_thinned, product_map
+from skytiles.region.mesh import COARSER_ORDER, is_thinned, product_of
 from skytiles.region.region import Region
 from skytiles.region.sky_map import SkyMap
+from skytiles.region.targets import TargetListConstraint
 from skytiles.sphere.healpix_door import pixel_side_deg
 
 Ints = NDArray[np.int64]
@@ -22,6 +32,10 @@ LOWEST_ORDER, HIGHEST_ORDER = 8, 10
 MOST_PIXELS = 200_000
 CREDIBLE_SHARE = 0.999
 PRIORS = ("flat", "galactic")
+# The rest of an area is thinner than the sky would be without any alert. It is left outside where
+# it would cost resolution, as long as the area itself holds at least this.
+_AS_DENSE_AS_NO_ALERT = 1.0
+_LEAST_KEPT = 0.5
 _LEVELS = {"50": 0.50, "90": 0.90, "99": 0.99}
 
 
@@ -31,6 +45,7 @@ def make_region(
     smallest_side_deg: float | None = None,
     order: int | None = None,
     prior: str = "flat",
+    galaxy: GalacticPrior | None = None,
 ) -> Region:
     """The product of constraints and prior on pixels of one working order.
 
@@ -40,6 +55,7 @@ def make_region(
     smallest_side_deg : float or None    smallest frame side of the network; None: order 8
     order : int or None    working order, 0 to 13, instead of the one chosen from the side
     prior : str    "flat" or "galactic"
+    galaxy : GalacticPrior or None    numbers of the Galactic prior; None: the usual ones
 
     Returns
     -------
@@ -48,9 +64,11 @@ def make_region(
     Source: Bayes's rule; credible region of highest density.
     """
     _refuse_bad_requests(constraints, order=order, prior=prior)
-    sky_map = product_map(constraints, GalacticPrior() if prior == "galactic" else None)
+    product = product_of(constraints, (galaxy or GalacticPrior()) if prior == "galactic" else None)
+    sky_map = product.sky_map
     wanted = order if order is not None else order_for_side(smallest_side_deg)
-    chosen, pixels, probabilities = _working_pixels(sky_map, wanted)
+    has_rest = any(isinstance(one, MocConstraint | PolygonConstraint) for one in constraints)
+    chosen, pixels, probabilities, is_cut = _working_pixels(sky_map, wanted, has_rest=has_rest)
     areas = credible_areas_deg2(sky_map, tuple(_LEVELS.values()))
     peak_ra, peak_dec = _peak_deg(constraints, sky_map, prior=prior)
     return Region(
@@ -62,7 +80,11 @@ def make_region(
         peak_ra_deg=peak_ra,
         peak_dec_deg=peak_dec,
         total_probability=_total_as_read(constraints),
-        notes=_notes(wanted, chosen, smallest_side_deg=smallest_side_deg, prior=prior)
+        overlap=product.overlap,
+        notes=_warnings(constraints)
+        + product.notes
+        + _notes(wanted, chosen, smallest_side_deg=smallest_side_deg, prior=prior)
+        + _rest_note(float(probabilities.sum()), is_cut=is_cut)
         + _thinning_note(constraints, prior=prior),
     )
 
@@ -91,8 +113,12 @@ def order_for_side(smallest_side_deg: float | None) -> int:
 def _refuse_bad_requests(
     constraints: Sequence[AnyConstraint], *, order: int | None, prior: str
 ) -> None:
-    if not constraints:
-        raise RegionError("no constraint", "one or more", "give a map, a cone or an ellipse")
+    if not any(isinstance(one, Directional | TargetListConstraint) for one in constraints):
+        raise RegionError(
+            given="nothing says in which direction the source is",
+            allowed="one or more constraints on the direction",
+            advice="give a map, a cone, an ellipse or an area",
+        )
     if prior not in PRIORS:
         raise RegionError(f"prior {prior!r}", " or ".join(PRIORS), "choose one of these")
     if order is not None and not 0 <= order <= 13:
@@ -103,10 +129,11 @@ def _peak_deg(
     constraints: Sequence[AnyConstraint], sky_map: SkyMap, *, prior: str
 ) -> tuple[float, float]:
     """The centre of a lone Gaussian, else the densest cell."""
-    only = constraints[0]
-    if len(constraints) > 1 or prior != "flat" or isinstance(only, MapConstraint):
-        return peak_deg(sky_map)
-    return only.ra_deg, only.dec_deg
+    pointing = [one for one in constraints if not isinstance(one, DistanceConstraint)]
+    only = pointing[0] if len(pointing) == 1 and prior == "flat" else None
+    if isinstance(only, ConeConstraint | EllipseConstraint):
+        return only.ra_deg, only.dec_deg
+    return peak_deg(sky_map)
 
 
 def _total_as_read(constraints: Sequence[AnyConstraint]) -> float:
@@ -115,15 +142,25 @@ def _total_as_read(constraints: Sequence[AnyConstraint]) -> float:
     return maps[0].total_probability if len(maps) == 1 else 1.0
 
 
-def _working_pixels(sky_map: SkyMap, wanted: int) -> tuple[int, Ints, Floats]:
-    """Order, pixels and probabilities, the order lowered until they are few enough."""
+def _working_pixels(
+    sky_map: SkyMap, wanted: int, *, has_rest: bool
+) -> tuple[int, Ints, Floats, bool]:
+    """Order, pixels and probabilities, the order lowered until they are few enough.
+
+    Before it is lowered, the flat rest of an area is left outside; the last value says so.
+    """
+    is_cut = False
     for order in range(wanted, -1, -1):
         coarse = sky_map.at_most_order(order)
         kept = _credible_cells(coarse)
+        if has_rest and _n_working_pixels(coarse, kept, order) > MOST_PIXELS:
+            inner = kept[coarse.densities[kept] >= _AS_DENSE_AS_NO_ALERT]
+            is_cut = float(coarse.probabilities[inner].sum()) >= _LEAST_KEPT
+            kept = inner if is_cut else kept
         if _n_working_pixels(coarse, kept, order) <= MOST_PIXELS or order == 0:
             break
     pixels, probabilities = _split_to_order(coarse, kept, order)
-    return order, pixels, probabilities
+    return order, pixels, probabilities, is_cut
 
 
 def _credible_cells(sky_map: SkyMap) -> Ints:
@@ -165,10 +202,23 @@ def _notes(
         )
     if prior == "galactic":
         notes.append(
-            "The prior is the Galactic disc with the Magellanic Clouds and a floor of 1 % over "
-            "the whole sky; dust is not in it."
+            "The prior is the Galactic disc with the Magellanic Clouds and a small floor over the "
+            "whole sky: it says where sources are; dust only dims them."
         )
     return tuple(notes)
+
+
+def _rest_note(kept: float, *, is_cut: bool) -> tuple[str, ...]:
+    if not is_cut:
+        return ()
+    share = f"{100.0 * (1.0 - kept):.1f} %"
+    return (f"{share} is spread over the sky around the area and counts as outside.",)
+
+
+def _warnings(constraints: Sequence[AnyConstraint]) -> tuple[str, ...]:
+    """What single constraints say against themselves."""
+    timed = [one for one in constraints if isinstance(one, ArrivalTimesConstraint)]
+    return tuple(note for one in timed for note in one.notes)
 
 
 def _thinning_note(constraints: Sequence[AnyConstraint], *, prior: str) -> tuple[str, ...]:

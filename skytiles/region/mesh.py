@@ -1,21 +1,29 @@
 """Cells fine where the constraints have detail, coarse elsewhere, and their product on them."""
 
 from collections.abc import Sequence
-from dataclasses import replace
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from skytiles.errors import RegionError
+from skytiles.region.agreement import agreement_of
+from skytiles.region.arrival_mesh import arrival_needs_split
+from skytiles.region.arrival_times import ArrivalTimesConstraint
 from skytiles.region.constraints import (
     AnyConstraint,
     ConeConstraint,
+    Directional,
     EllipseConstraint,
     MapConstraint,
+    MapLike,
 )
+from skytiles.region.distance import DistanceConstraint
 from skytiles.region.galactic_prior import GalacticPrior
 from skytiles.region.sky_map import SkyMap
-from skytiles.sphere.angles import separations_deg
+from skytiles.region.target_blend import blended_prior
+from skytiles.region.targets import TargetListConstraint
+from skytiles.sphere.angles import separations_deg, unit_vectors
 from skytiles.sphere.galactic import galactic_lons_lats_deg
 from skytiles.sphere.healpix_door import (
     MAX_ORDER,
@@ -45,7 +53,17 @@ _DISC_ORDER = 8
 _DISC_HALF_WIDTH_DEG = 3.0
 
 
-def product_map(constraints: Sequence[AnyConstraint], prior: GalacticPrior | None) -> SkyMap:
+@dataclass(frozen=True, eq=False)
+class Product:
+    """The normalised product, how well its constraints agree, and what is to be said about it."""
+
+    sky_map: SkyMap
+    # See Agreement.overlap; None when there is nothing to agree with.
+    overlap: float | None = None
+    notes: tuple[str, ...] = ()
+
+
+def product_of(constraints: Sequence[AnyConstraint], prior: GalacticPrior | None) -> Product:
     """The normalised product of constraints and prior.
 
     Parameters
@@ -55,21 +73,63 @@ def product_map(constraints: Sequence[AnyConstraint], prior: GalacticPrior | Non
 
     Returns
     -------
-    SkyMap    cells over the whole sky (a single map without prior is returned as it is)
+    Product    cells over the whole sky (a single map without prior is returned as it is)
 
     Source: Bayes's rule for independent measurements; the floor is our own.
     """
-    if len(constraints) == 1 and prior is None and isinstance(constraints[0], MapConstraint):
-        return constraints[0].sky_map
-    constraints = [_thinned(constraint) for constraint in constraints]
-    orders, pixels = _cells(constraints, prior)
+    distances = tuple(one for one in constraints if isinstance(one, DistanceConstraint))
+    lists = [one for one in constraints if isinstance(one, TargetListConstraint)]
+    pointing = [one for one in constraints if isinstance(one, Directional)]
+    only = pointing[0] if len(pointing) == 1 and not lists and prior is None else None
+    if isinstance(only, MapLike):
+        return Product(only.sky_map)
+    pointing = [_thinned(one) for one in pointing]
+    orders, pixels = _cells([*pointing, *lists], prior)
     ras, decs = _centres(orders, pixels)
-    logs = np.zeros(len(pixels))
-    for constraint in constraints:
-        logs += np.log(FLOOR + (1.0 - FLOOR) * _densities(constraint, orders, pixels, ras, decs))
-    if prior is not None:
-        logs += np.log(prior.densities(ras, decs))
-    return _normalised(orders, pixels, logs)
+    pieces = [
+        np.log(FLOOR + (1.0 - FLOOR) * _densities(constraint, orders, pixels, ras, decs))
+        for constraint in pointing
+    ]
+    smooth = np.ones(len(pixels)) if prior is None else prior.densities(ras, decs)
+    logs = np.sum(pieces, axis=0) if pieces else np.zeros(len(pixels))
+    shares = _shares(orders)
+    if lists:
+        weights, vectors = np.exp(logs - logs.max()) * shares, unit_vectors(ras, decs)
+        smooth = blended_prior(smooth, lists, vectors, weights=weights, distances=distances)
+    chosen = _normalised(orders, pixels, logs + np.log(smooth))
+    return Product(chosen, *_agreement(pointing, pieces, shares))
+
+
+def _agreement(
+    constraints: Sequence[Directional], pieces: Sequence[Floats], shares: Floats
+) -> tuple[float | None, tuple[str, ...]]:
+    """The overlap of several constraints, and a sentence when they contradict each other."""
+    agreement = agreement_of(pieces, shares)
+    if agreement is None:
+        return None, ()
+    note = agreement.note([one.kind for one in constraints])
+    return agreement.overlap, (note,) if note else ()
+
+
+def _shares(orders: Ints) -> Floats:
+    """Share of the sky of each cell."""
+    return np.asarray(4.0 ** -orders.astype(np.float64) / 12.0)
+
+
+def product_map(constraints: Sequence[AnyConstraint], prior: GalacticPrior | None) -> SkyMap:
+    """The map of a product alone.
+
+    Parameters
+    ----------
+    constraints, prior    as for product_of
+
+    Returns
+    -------
+    SkyMap    cells over the whole sky
+
+    Source: as product_of.
+    """
+    return product_of(constraints, prior).sky_map
 
 
 def is_thinned(constraint: AnyConstraint) -> bool:
@@ -85,14 +145,14 @@ def is_thinned(constraint: AnyConstraint) -> bool:
 
     Source: our own.
     """
-    return isinstance(constraint, MapConstraint) and constraint.sky_map.n_cells > _MANY_CELLS
+    return isinstance(constraint, MapLike) and constraint.sky_map.n_cells > _MANY_CELLS
 
 
-def _thinned(constraint: AnyConstraint) -> AnyConstraint:
+def _thinned(constraint: Directional) -> Directional:
     """A huge map at a coarser order, anything else as it is."""
-    if not isinstance(constraint, MapConstraint) or not is_thinned(constraint):
+    if not isinstance(constraint, MapLike) or not is_thinned(constraint):
         return constraint
-    return replace(constraint, sky_map=constraint.sky_map.at_most_order(COARSER_ORDER))
+    return MapConstraint(sky_map=constraint.sky_map.at_most_order(COARSER_ORDER))
 
 
 def _normalised(orders: Ints, pixels: Ints, logs: Floats) -> SkyMap:
@@ -102,7 +162,9 @@ def _normalised(orders: Ints, pixels: Ints, logs: Floats) -> SkyMap:
     return SkyMap(orders=orders[sequence], pixels=pixels[sequence], probabilities=probabilities)
 
 
-def _cells(constraints: Sequence[AnyConstraint], prior: GalacticPrior | None) -> tuple[Ints, Ints]:
+def _cells(
+    constraints: Sequence[Directional | TargetListConstraint], prior: GalacticPrior | None
+) -> tuple[Ints, Ints]:
     """Orders and pixels: split wherever a constraint or the prior has finer detail."""
     pixels = np.arange(n_pixels(_FIRST_ORDER), dtype=np.int64)
     leaves: list[tuple[int, Ints]] = []
@@ -120,9 +182,13 @@ def _cells(constraints: Sequence[AnyConstraint], prior: GalacticPrior | None) ->
     return orders.astype(np.int64), np.concatenate([leaf for _, leaf in leaves])
 
 
-def _needs_split(constraint: AnyConstraint, order: int, pixels: Ints) -> Bools:
-    if isinstance(constraint, MapConstraint):
+def _needs_split(constraint: Directional | TargetListConstraint, order: int, pixels: Ints) -> Bools:
+    if isinstance(constraint, TargetListConstraint):
+        return constraint.needs_split(order, pixels)
+    if isinstance(constraint, MapLike):
         return _map_needs_split(constraint.sky_map, order, pixels)
+    if isinstance(constraint, ArrivalTimesConstraint):
+        return arrival_needs_split(constraint, order, pixels)
     return _gaussian_needs_split(constraint, order, pixels)
 
 
@@ -177,11 +243,11 @@ def _centres(orders: Ints, pixels: Ints) -> tuple[Floats, Floats]:
 
 
 def _densities(
-    constraint: AnyConstraint, orders: Ints, pixels: Ints, ras_deg: Floats, decs_deg: Floats
+    constraint: Directional, orders: Ints, pixels: Ints, ras_deg: Floats, decs_deg: Floats
 ) -> Floats:
     """Probability per share of the sky, normalised on the cells: 1 everywhere for a flat one."""
-    shares = 4.0 ** -orders.astype(np.float64) / 12.0
-    if isinstance(constraint, MapConstraint):
+    shares = _shares(orders)
+    if isinstance(constraint, MapLike):
         values = _map_densities(constraint.sky_map, orders, pixels)
     else:
         values = np.exp(constraint.log_likelihoods(ras_deg, decs_deg))

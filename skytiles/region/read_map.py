@@ -16,7 +16,7 @@ Floats = NDArray[np.float64]
 
 # DESIGN: a file of more than 2 GB is refused before it is read.
 MAX_MAP_BYTES = 2_000_000_000
-_GZIP = b"\x1f\x8b"
+GZIP = b"\x1f\x8b"
 _DISTANCES = ("DISTMU", "DISTSIGMA", "DISTNORM")
 # Off by more than this, the sum is worth a note.
 _SUM_TOLERANCE = 1e-3
@@ -39,31 +39,42 @@ def read_sky_map(data: bytes) -> SkyMap:
     Source: columns and keywords of public HEALPix alert maps (UNIQ with PROBDENSITY in sr-1;
     PROB per pixel with ORDERING RING or NESTED); NUNIQ packing of IVOA MOC 2.0.
     """
-    table = read_table(_unpacked(data))
+    table = read_table(unpacked(data))
     if str(table.header.get("COORDSYS", "C")).strip().upper() not in ("C", "CEL", "Q", "ICRS"):
         raise MapFileError(
-            given=f"COORDSYS = {table.header['COORDSYS']!r}",
+            given=f"it says COORDSYS = {table.header['COORDSYS']!r}",
             allowed="celestial coordinates (COORDSYS 'C')",
             advice="rotate the map to celestial (ICRS) coordinates first",
         )
     return _multi_order_map(table) if "UNIQ" in table.names else _flat_map(table)
 
 
-def _unpacked(data: bytes) -> bytes:
-    """The file itself, unpacked when it is gzipped, within the limit."""
-    if not data.startswith(_GZIP):
+def unpacked(data: bytes) -> bytes:
+    """The file itself, unpacked when it is gzipped, within the limit.
+
+    Parameters
+    ----------
+    data : bytes    the whole file
+
+    Returns
+    -------
+    bytes    MapFileError for what cannot be unpacked or is too large
+
+    Source: RFC 1952.
+    """
+    if not data.startswith(GZIP):
         return data
     unpacker = zlib.decompressobj(wbits=31)
     try:
         plain = unpacker.decompress(data, MAX_MAP_BYTES)
     except zlib.error as error:
         raise MapFileError(
-            given=f"a gzipped file that cannot be unpacked ({error})",
+            given=f"it is gzipped and cannot be unpacked ({error})",
             allowed="a complete .fits or .fits.gz file",
             advice="fetch the file again; its download was probably cut short",
         ) from error
     if unpacker.unconsumed_tail:
-        raise too_large_error(f"a file of more than {MAX_MAP_BYTES} bytes when unpacked")
+        raise too_large_error(f"it has more than {MAX_MAP_BYTES} bytes when unpacked")
     return plain
 
 
@@ -104,7 +115,7 @@ def _unpacked_uniq(table: FitsTable) -> tuple[Ints, Ints, tuple[str, ...]]:
     numbers, notes = _uniq_numbers(table)
     if len(numbers) == 0 or numbers.min() < 4 or numbers.max() >= 4 << 2 * (MAX_ORDER + 1):
         raise MapFileError(
-            given="UNIQ numbers outside 4 .. 4 x 4^30 or none at all",
+            given="it has UNIQ numbers outside 4 .. 4 x 4^30, or none at all",
             allowed="4 x 4^order + pixel, order 0 to 29",
             advice="fetch the file again, or ask its maker for a multi-order map",
         )
@@ -118,7 +129,7 @@ def _uniq_numbers(table: FitsTable) -> tuple[Ints, tuple[str, ...]]:
     stored = table.raw("UNIQ")
     if stored.dtype.kind not in "iu":
         raise MapFileError(
-            given="UNIQ numbers that are not whole numbers",
+            given="its UNIQ numbers are not whole numbers",
             allowed="a column of FITS type J or K",
             advice="write the map again with whole UNIQ numbers",
         )
@@ -182,7 +193,7 @@ def _order(table: FitsTable, n_values: int, *, is_implicit: bool) -> int:
         nside = round((n_values / 12) ** 0.5)
     if not isinstance(nside, int) or nside < 1 or nside & (nside - 1) or nside > 1 << MAX_ORDER:
         raise MapFileError(
-            given=f"NSIDE = {nside!r}",
+            given=f"its NSIDE is {nside!r}",
             allowed="a power of two",
             advice="fetch the file again; its header is damaged",
         )
@@ -204,7 +215,7 @@ def _ordering(table: FitsTable, allowed: tuple[str, ...]) -> str:
     given = str(table.header.get("ORDERING", "")).strip().upper()
     if given not in allowed:
         raise MapFileError(
-            given=f"ORDERING = {given!r} in a table with columns {', '.join(table.names)}",
+            given=f"it says ORDERING = {given!r} and has the columns {', '.join(table.names)}",
             allowed="NUNIQ with a column UNIQ; RING or NESTED with a column PROB",
             advice="ask the maker of the map which order it has, and correct the keyword",
         )
@@ -213,7 +224,7 @@ def _ordering(table: FitsTable, allowed: tuple[str, ...]) -> str:
 
 def _column_error(table: FitsTable, wanted: str) -> MapFileError:
     return MapFileError(
-        given=f"a table with the columns {', '.join(table.names) or 'none'}",
+        given=f"its table has the columns {', '.join(table.names) or 'none'}",
         allowed=f"a column {wanted}",
         advice="choose the sky map of the alert (multi-order, or a single-resolution map)",
     )
@@ -221,7 +232,7 @@ def _column_error(table: FitsTable, wanted: str) -> MapFileError:
 
 def _length_error(n_values: int, n_allowed: int) -> MapFileError:
     return MapFileError(
-        given=f"{n_values} values",
+        given=f"it has {n_values} values",
         allowed=f"{n_allowed}, one for each pixel",
         advice="fetch the file again; its header and its table disagree",
     )
@@ -259,14 +270,16 @@ def _judged_total(probabilities: Floats) -> float:
     """Sum of the probabilities; refuses what is no probability."""
     if not np.isfinite(probabilities).all():
         n_bad = int(np.count_nonzero(~np.isfinite(probabilities)))
-        raise _value_error(f"{n_bad} probabilities that are not finite numbers (NaN)")
+        raise _value_error(f"{n_bad} of its probabilities are not finite numbers (NaN)")
     if (probabilities < 0.0).any():
         n_bad = int(np.count_nonzero(probabilities < 0.0))
-        raise _value_error(f"{n_bad} negative probabilities, the least {probabilities.min():.3g}")
+        raise _value_error(
+            f"{n_bad} of its probabilities are negative, the least {probabilities.min():.3g}"
+        )
     with np.errstate(over="ignore"):
         total = float(probabilities.sum())
     if not 0.0 < total < np.inf:
-        raise _value_error(f"probabilities that sum to {total:g}")
+        raise _value_error(f"its probabilities sum to {total:g}")
     return total
 
 
@@ -285,7 +298,7 @@ def _distances(table: FitsTable, chosen: NDArray[np.intp]) -> dict[str, Floats]:
 def _refuse_overlaps(sky_map: SkyMap) -> None:
     if (sky_map.starts[1:] < sky_map.ends[:-1]).any():
         raise MapFileError(
-            given="cells that overlap each other",
+            given="its cells overlap each other",
             allowed="cells that each cover their own patch of sky",
             advice="ask the maker of the map; its probabilities would count twice",
         )

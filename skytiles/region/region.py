@@ -27,6 +27,9 @@ class Region:
     peak_dec_deg: float
     # As read, before normalising.
     total_probability: float = 1.0
+    # How well the constraint that fits least agrees with the others: 1 is what unrelated
+    # directions have on average, below 0.01 they contradict each other; None for a single one.
+    overlap: float | None = None
     notes: tuple[str, ...] = ()
 
     @property
@@ -44,7 +47,7 @@ def describe_region(region: Region) -> dict[str, Any]:
 
     Returns
     -------
-    dict    area_deg2, peak, order, n_pixels, outside, total_probability, notes
+    dict    area_deg2, peak, order, n_pixels, outside, total_probability, overlap, notes
 
     Source: our own.
     """
@@ -55,5 +58,6 @@ def describe_region(region: Region) -> dict[str, Any]:
         "n_pixels": region.n_pixels,
         "outside": region.outside,
         "total_probability": region.total_probability,
+        "overlap": region.overlap,
         "notes": list(region.notes),
     }

@@ -1,1 +1,1 @@
-"""Angles, vectors, HEALPix, and the doors to healpy and astropy."""
+"""Directions, areas, times and HEALPix pixels on the sphere."""

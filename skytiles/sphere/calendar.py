@@ -53,3 +53,19 @@ def mjd_from_iso(text: str) -> float:
     Source: ISO 8601; definition of the MJD.
     """
     return mjd_from_datetime(datetime.fromisoformat(text.strip()))
+
+
+def iso_from_mjd(mjd: float) -> str:
+    """Date and time in words of a modified Julian date.
+
+    Parameters
+    ----------
+    mjd : float    days, UTC
+
+    Returns
+    -------
+    str    ISO 8601 with Z, to the microsecond
+
+    Source: ISO 8601; definition of the MJD.
+    """
+    return datetime_from_mjd(mjd).isoformat().replace("+00:00", "Z")

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
@@ -38,11 +39,16 @@ class Ledger:
     source_model : SourceModel
     offset_weights : (b,) or (p, b) float, optional
                                      spread of the magnitudes on the model's offset grid, shared or
-                                     per pixel; None: the model's own
+                                     per pixel (float32 is kept); None: the model's own
 
     Raises
     ------
     LedgerError    when shapes or sums do not fit
+
+    Formula: D_i = (1 - u_i) sum_h w_h sum_b q_i(b) [1 - prod_l (1 - c_l (1 - prod_e (1 - phi_ei
+    eps_e(m_h(t_e) + b))))] over hypotheses h, offsets b, looks l, frames e of a look over pixel i;
+    searched = sum_i p_i D_i; imaged = sum of p_i under any frame;
+    residual_i = p_i (1 - D_i) / (1 - searched).
 
     Source: DEVELOPERS.md, ledger (the exact definition). A frame changes only the pixels under
     its look; withdrawing recomputes them and never divides.
@@ -62,7 +68,11 @@ class Ledger:
         self.undetectable = np.asarray(undetectable, dtype=np.float64)
         self.source_model = source_model
         weights = source_model.offset_weights if offset_weights is None else offset_weights
-        self.offset_weights = np.asarray(weights, dtype=np.float64)
+        # Weights per pixel are many: those in single precision stay so.
+        is_single = getattr(weights, "dtype", None) == np.float32
+        self.offset_weights: Floats = np.asarray(
+            weights, dtype=np.float32 if is_single else np.float64
+        )
         self._check()
         n_pixels = len(self.probabilities)
         self._entries: dict[int, _Entry] = {}
@@ -147,16 +157,27 @@ class Ledger:
         """
         return key in self._entries
 
-    def miss_states(self) -> tuple[Ints, Floats]:
+    def miss_states(self, n_most: int = 256) -> Iterator[tuple[Ints, Ints, Floats]]:
         """Chance that all looks miss a source that can be found, by hypothesis and offset.
+
+        Parameters
+        ----------
+        n_most : int    states at a time
 
         Returns
         -------
-        (p,) int, (g, h, b) float    the state of pixel i is the second at [first[i]]
+        iterator of (m,) int, (m,) int, (g, h, b) float
+                        pixels, each once over all parts; which of the part's states each has
         """
         distinct, states_of = np.unique(self._groups.group_of, return_inverse=True)
-        signatures = [self._groups.signatures[group] for group in distinct.tolist()]
-        return states_of.reshape(-1), np.stack(list(self._book.misses(signatures)))
+        by_state = np.argsort(states_of.reshape(-1), kind="stable")
+        ends = np.searchsorted(states_of.reshape(-1)[by_state], np.arange(len(distinct) + 1))
+        for first in range(0, len(distinct), n_most):
+            groups = distinct[first : first + n_most].tolist()
+            signatures = [self._groups.signatures[group] for group in groups]
+            pixels = by_state[ends[first] : ends[first + len(groups)]]
+            states = np.stack(list(self._book.misses(signatures)))
+            yield pixels, states_of.reshape(-1)[pixels] - first, states
 
     # What changes the account. Each returns the pixels whose D may have changed.
 
@@ -183,7 +204,7 @@ class Ledger:
         if not frame.is_look:
             return np.empty(0, dtype=np.int64)
         magnitudes = self.source_model.node_magnitudes(frame.t_d, frame.band)
-        self._book.efficiencies[frame.key] = frame_efficiency(frame, magnitudes)
+        self._book.learn(frame.key, frame_efficiency(frame, magnitudes))
         looks = self._looks.setdefault(frame.instrument, InstrumentLooks())
         touched = self._note_looks(looks, *looks.add(frame))
         new_groups = self._groups.cover(frame.key, entry.pixels, entry.fractions)
@@ -213,7 +234,7 @@ class Ledger:
         looks = self._looks[entry.frame.instrument]
         touched = self._note_looks(looks, *looks.remove(key)) - {key}
         new_groups = self._groups.uncover(key, entry.pixels)
-        del self._book.efficiencies[key]
+        self._book.forget(key)
         return self._recompute(new_groups | self._groups.groups_with(touched), entry.pixels)
 
     def replace(self, frame: LedgerFrame, indices: npt.ArrayLike, fractions: npt.ArrayLike) -> Ints:

@@ -84,6 +84,8 @@ def detection_efficiency(
     -------
     (...) float    0..1
 
+    Formula: eps = 1 / (1 + exp((m - m_eff) / s)) up to m_eff + 3 s, else 0.
+
     Source: DEVELOPERS.md, ledger; the logistic curve is that of Veres & Chesley 2017.
     """
     mags, limits = np.asarray(magnitudes, np.float64), np.asarray(m_eff, np.float64)

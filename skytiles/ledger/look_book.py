@@ -13,6 +13,9 @@ from skytiles.ledger.pixel_groups import Signature
 
 Floats = npt.NDArray[np.float64]
 
+# States of more nodes than this are kept in single precision: an error of 1e-7 in D.
+_MOST_DOUBLE_NODES = 2_000
+
 
 class LookBook:
     """What each examined frame can show, which look it belongs to, and what each look is worth.
@@ -24,12 +27,33 @@ class LookBook:
     """
 
     def __init__(self, weights: Floats, *, n_offsets: int) -> None:
-        # Frame key to (h, b) efficiency, were all of the pixel under it.
-        self.efficiencies: dict[int, Floats] = {}
-        self._weights = weights
         self._shape = (len(weights), n_offsets)
+        is_large = len(weights) * n_offsets > _MOST_DOUBLE_NODES
+        self._dtype = np.dtype(np.float32 if is_large else np.float64)
+        self._weights = weights.astype(self._dtype)
+        # Frame key to (h, b) efficiency, were all of the pixel under it.
+        self._efficiencies: dict[int, Floats] = {}
         self._look_of: dict[int, int] = {}
         self._completeness: dict[int, float] = {}
+
+    def learn(self, key: int, efficiencies: Floats) -> None:
+        """Note what a frame can show.
+
+        Parameters
+        ----------
+        key : int                   of the frame
+        efficiencies : (h, b) float    chance that it shows a source, were all of a pixel under it
+        """
+        self._efficiencies[key] = efficiencies.astype(self._dtype)
+
+    def forget(self, key: int) -> None:
+        """Drop what a frame can show.
+
+        Parameters
+        ----------
+        key : int    of the frame
+        """
+        del self._efficiencies[key]
 
     def open(self, look: Look, completeness: float) -> None:
         """Note a look, known by its first frame.
@@ -67,7 +91,7 @@ class LookBook:
         """
         by_look: dict[Signature, Floats] = {}
         for signature in signatures:
-            state = np.ones(self._shape)
+            state = np.ones(self._shape, self._dtype)
             for terms in self._looks_of(signature):
                 if terms not in by_look:
                     by_look[terms] = self._miss_of_look(terms)
@@ -85,9 +109,10 @@ class LookBook:
         -------
         (g, b) float    0..1; exactly 0 where nothing can be found
         """
-        rows = np.empty((len(signatures), self._shape[1]))
+        rows = np.empty((len(signatures), self._shape[1]), self._dtype)
         for row, state in zip(rows, self.misses(signatures), strict=True):
-            np.dot(self._weights, 1.0 - state, out=row)
+            np.subtract(1.0, state, out=state)
+            np.dot(self._weights, state, out=row)
         return rows
 
     def _looks_of(self, signature: Signature) -> list[Signature]:
@@ -99,7 +124,7 @@ class LookBook:
 
     def _miss_of_look(self, terms: Signature) -> Floats:
         """1 - g of one look on a pixel under the given frames of it."""
-        unseen = np.ones(self._shape)
+        unseen = np.ones(self._shape, self._dtype)
         for key, fraction in terms:
-            unseen *= 1.0 - fraction * self.efficiencies[key]
+            unseen *= 1.0 - fraction * self._efficiencies[key]
         return 1.0 - self._completeness[self._look_of[terms[0][0]]] * (1.0 - unseen)

@@ -2,21 +2,79 @@
 
 from __future__ import annotations
 
-import math
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass
+from typing import Any
 
-import numpy as np
-import numpy.typing as npt
+from skytiles.source import core_collapse, single_lights
+from skytiles.source.assumption import Assumption, filled_in
+from skytiles.source.offset_grid import normal_offsets
+from skytiles.source.source_model import SourceModel
 
-from skytiles.errors import SourceError
-from skytiles.source.hypothesis import ALWAYS_D, Hypothesis
-from skytiles.source.source_model import LARGEST_STEP_MAG, SourceModel
+__all__ = ["PRESETS", "Preset", "normal_offsets", "preset_to_json", "steady_model"]
 
-Floats = npt.NDArray[np.float64]
+# What is assumed everywhere and cannot be changed by a number.
+_COLOURS = "Vega magnitudes; intrinsic colours are 0 unless a number says otherwise."
+_DUST = "Dust dims each band after Cardelli, Clayton & Mathis 1989 with R_V = 3.1."
 
-# A grid of +-4 sigma leaves 6e-5 of the probability to its two end nodes.
-_REACH_SIGMA = 4.0
-_FEWEST_STEPS_PER_SIGMA = 2
+
+@dataclass(frozen=True)
+class Preset:
+    """A source model with its assumptions; call it with the numbers that differ."""
+
+    name: str
+    about: str
+    # The prior that suits it: "flat" or "galactic".
+    prior: str
+    assumptions: tuple[Assumption, ...]
+    make: Callable[[Mapping[str, float]], SourceModel]
+
+    def __call__(self, **changed: float) -> SourceModel:
+        """The model with some numbers changed."""
+        return self.make(filled_in(self.assumptions, changed))
+
+
+_ALL = (
+    Preset(
+        "core collapse",
+        "A star of the Galaxy collapses. Neutrinos leave at once; light shows when the shock "
+        f"reaches the surface, minutes to days later. {_COLOURS} {_DUST}",
+        "galactic",
+        core_collapse.ASSUMPTIONS,
+        core_collapse.core_collapse,
+    ),
+    Preset(
+        "steady",
+        f"A light that shines before and after the event at one brightness. {_COLOURS}",
+        "flat",
+        single_lights.STEADY,
+        single_lights.steady,
+    ),
+    Preset(
+        "afterglow",
+        f"Light from the first seconds on that falls as a power of time. {_COLOURS}",
+        "flat",
+        single_lights.AFTERGLOW,
+        single_lights.afterglow,
+    ),
+    Preset(
+        "red transient",
+        "A light at a stated distance that is constant for a day and then fades, faster in the "
+        "blue: linear in wavelength between g and i. No dust is counted.",
+        "flat",
+        single_lights.RED_TRANSIENT,
+        single_lights.red_transient,
+    ),
+    Preset(
+        "nova",
+        f"A nova in the disc of the Galaxy. {_COLOURS} {_DUST}",
+        "galactic",
+        single_lights.NOVA,
+        single_lights.nova,
+    ),
+)
+
+PRESETS: dict[str, Preset] = {preset.name: preset for preset in _ALL}
 
 
 def steady_model(magnitude: float = 12.0, sigma_mag: float = 2.0) -> SourceModel:
@@ -33,46 +91,27 @@ def steady_model(magnitude: float = 12.0, sigma_mag: float = 2.0) -> SourceModel
 
     Raises
     ------
-    SourceError    when a number is not finite or the spread is out of range
+    SourceError    when a number is not finite or out of range
     """
-    if not math.isfinite(magnitude) or not 0.0 <= sigma_mag <= 10.0:
-        raise SourceError(
-            f"magnitude {magnitude}, spread {sigma_mag}",
-            "a finite magnitude and a spread of 0 to 10 magnitudes",
-            "correct the source model",
-        )
-    offsets_mag, offset_weights = normal_offsets(sigma_mag)
-    always = Hypothesis("steady", 1.0, ALWAYS_D, magnitude, magnitude, 1.0, 0.0)
-    return SourceModel(
-        hypotheses=(always,),
-        offsets_mag=offsets_mag,
-        offset_weights=offset_weights,
-        label=f"steady light of magnitude {magnitude:g}, spread {sigma_mag:g}",
-        preset="steady",
-        parameters={"magnitude": magnitude, "sigma_mag": sigma_mag},
-    )
+    return PRESETS["steady"](magnitude=magnitude, sigma_mag=sigma_mag)
 
 
-def normal_offsets(sigma_mag: float) -> tuple[Floats, Floats]:
-    """Normal spread on an even grid of offsets; each node holds the probability of its cell.
+def preset_to_json(preset: Preset) -> dict[str, Any]:
+    """A preset with all that it assumes, as it is shown at Launch.
 
     Parameters
     ----------
-    sigma_mag : float    standard deviation, magnitudes, >= 0
+    preset : Preset
 
     Returns
     -------
-    (b,) float, (b,) float    offsets in magnitudes, step <= 0.5 and <= sigma/2; weights, sum 1
+    dict    preset, about, prior, assumptions
+
+    Source: our own.
     """
-    if sigma_mag == 0.0:
-        return np.zeros(1), np.ones(1)
-    per_sigma = max(_FEWEST_STEPS_PER_SIGMA, math.ceil(sigma_mag / LARGEST_STEP_MAG))
-    n_each_side = math.ceil(_REACH_SIGMA * per_sigma)
-    steps = np.arange(-n_each_side, n_each_side + 1)
-    edges_sigma = (steps[:-1] + 0.5) / per_sigma
-    below = np.array([0.5 * math.erfc(-edge / math.sqrt(2.0)) for edge in edges_sigma])
-    offsets_mag: Floats = steps.astype(np.float64) * (sigma_mag / per_sigma)
-    return offsets_mag, np.diff(np.concatenate([[0.0], below, [1.0]]))
-
-
-PRESETS: dict[str, Callable[..., SourceModel]] = {"steady": steady_model}
+    return {
+        "preset": preset.name,
+        "about": preset.about,
+        "prior": preset.prior,
+        "assumptions": [one.to_json() for one in preset.assumptions],
+    }

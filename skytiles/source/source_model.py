@@ -9,6 +9,7 @@ import numpy as np
 import numpy.typing as npt
 
 from skytiles.errors import SourceError
+from skytiles.source.extinction import extinction_ratio
 from skytiles.source.hypothesis import Hypothesis, magnitudes
 
 Floats = npt.NDArray[np.float64]
@@ -16,11 +17,16 @@ Floats = npt.NDArray[np.float64]
 # Coarser offset grids would smear the detection curve (DEVELOPERS.md, source model).
 LARGEST_STEP_MAG = 0.5
 _SUM_TOLERANCE = 1e-6
+PLACEMENTS = ("apparent", "galactic")
 
 
 @dataclass(frozen=True, eq=False)
 class SourceModel:
-    """Hypotheses with weights that sum to 1; offsets (b,) in magnitudes with weights (b,)."""
+    """Hypotheses with weights that sum to 1; nodes of offsets (b,) with weights (b,).
+
+    A node is an offset in magnitudes, the same in all bands, and an extinction A_V, which is worth
+    in each band what the extinction law says. Without extinctions they are 0.
+    """
 
     hypotheses: tuple[Hypothesis, ...]
     offsets_mag: Floats
@@ -28,8 +34,15 @@ class SourceModel:
     label: str
     preset: str = "custom"
     parameters: Mapping[str, float] = field(default_factory=dict)
+    extinctions_mag: Floats | None = None
+    # "galactic": the magnitudes are absolute, and the model is placed before it is used.
+    placement: str = "apparent"
 
     def __post_init__(self) -> None:
+        if self.placement not in PLACEMENTS:
+            raise SourceError(
+                f"placement {self.placement!r}", " or ".join(PLACEMENTS), "choose one of these"
+            )
         _check_sum("hypothesis weights", [h.weight for h in self.hypotheses])
         _check_sum("offset weights", self.offset_weights)
         if self.offsets_mag.shape != self.offset_weights.shape or self.offsets_mag.ndim != 1:
@@ -38,13 +51,33 @@ class SourceModel:
                 "one weight for each offset",
                 "correct the lists",
             )
-        if not np.all(np.isfinite(self.offsets_mag)) or np.any(np.diff(self.offsets_mag) <= 0.0):
-            raise SourceError("offsets", "finite numbers in rising order", "sort the offsets")
+        _check_nodes(self.offsets_mag, self.extinctions_mag)
 
     @property
     def weights(self) -> Floats:
         """(h,) weights of the hypotheses."""
         return np.array([hypothesis.weight for hypothesis in self.hypotheses])
+
+    @property
+    def first_light_d(self) -> float:
+        """Days after the event before which no hypothesis of any weight shows light."""
+        return min(h.first_light_d for h in self.hypotheses if h.weight > 0.0)
+
+    def offsets_in(self, band: str) -> Floats:
+        """Offsets of the nodes in one band, extinction included.
+
+        Parameters
+        ----------
+        band : str    band of the frames
+
+        Returns
+        -------
+        (b,) float    magnitudes
+        """
+        if self.extinctions_mag is None:
+            return self.offsets_mag
+        in_band: Floats = self.offsets_mag + extinction_ratio(band) * self.extinctions_mag
+        return in_band
 
     def magnitudes(self, t_d: npt.ArrayLike, band: str) -> Floats:
         """Magnitudes of every hypothesis, before any offset.
@@ -72,7 +105,21 @@ class SourceModel:
         -------
         (h, b) float    Vega magnitudes; +inf before first light
         """
-        return self.magnitudes([t_d], band) + self.offsets_mag[None, :]
+        return self.magnitudes([t_d], band) + self.offsets_in(band)[None, :]
+
+
+def _check_nodes(offsets_mag: Floats, extinctions_mag: Floats | None) -> None:
+    if not np.all(np.isfinite(offsets_mag)):
+        raise SourceError("offsets", "finite numbers", "correct the offsets")
+    if extinctions_mag is None:
+        if np.any(np.diff(offsets_mag) <= 0.0):
+            raise SourceError("offsets", "numbers in rising order", "sort the offsets")
+        return
+    is_fine = np.isfinite(extinctions_mag) & (extinctions_mag >= 0.0)
+    if extinctions_mag.shape != offsets_mag.shape or not np.all(is_fine):
+        raise SourceError(
+            "extinctions", "one of 0 or more for each offset, finite", "correct the lists"
+        )
 
 
 def _check_sum(name: str, weights: npt.ArrayLike) -> None:

@@ -192,8 +192,10 @@ def test_miss_states_give_the_same_detection(seed, is_shared):
     case = random_case(rng, is_shared=is_shared)
     ledger = empty_ledger(case, is_shared=is_shared)
     random_walk(rng, ledger, 20)
-    state_of, states = ledger.miss_states()
     weights = [row["w"] for row in case["hypotheses"]]
-    missed = np.einsum("h,ihb,ib->i", weights, states[state_of], np.array(case["q"]))
+    missed = np.full(len(case["p"]), np.nan)
+    for pixels, state_of, states in ledger.miss_states(n_most=3):
+        offset_weights = np.array(case["q"])[pixels]
+        missed[pixels] = np.einsum("h,ihb,ib->i", weights, states[state_of], offset_weights)
     expected = (1.0 - np.array(case["u"])) * (1.0 - missed)
     np.testing.assert_allclose(ledger.detected, expected, rtol=0, atol=1e-12)

@@ -90,7 +90,7 @@ def test_shapes_that_do_not_fit_are_refused(changes):
 
 
 def test_probabilities_must_sum_to_one():
-    with pytest.raises(LedgerError, match="normalise"):
+    with pytest.raises(LedgerError, match="Normalise"):
         Ledger([0.5], 0.2, undetectable=[0.0], source_model=steady_model())
 
 

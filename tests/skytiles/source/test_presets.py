@@ -108,3 +108,38 @@ def test_what_makes_no_source_model_is_refused_with_advice(document):
     with pytest.raises(SourceError) as refusal:
         source_from_json(document)
     assert refusal.value.advice
+
+
+GALACTIC = {
+    "label": "a flare",
+    "placement": "galactic",
+    "parameters": {"spread_mag": 0.5, "centre_extinction_mag": 20.0},
+    "hypotheses": [{"weight": 1.0, "first_light_d": 0.0, "m_first": -5, "m_peak": -9, "rise_d": 2}],
+}
+
+
+def test_a_custom_model_may_stand_in_the_galaxy():
+    model = source_from_json(GALACTIC)
+    again = source_from_json(json.loads(json.dumps(source_to_json(model))))
+    assert again.placement == "galactic"
+    assert again.parameters == model.parameters
+    assert again.parameters["centre_extinction_mag"] == 20.0
+    assert again.hypotheses == model.hypotheses
+
+
+@pytest.mark.parametrize(
+    "document",
+    [
+        CUSTOM | {"colour": "red"},
+        CUSTOM | {"placement": "nearby"},
+        CUSTOM | {"hypotheses": [CUSTOM["hypotheses"][0] | {"weight": 1.0, "hue": 2}]},
+        CUSTOM | {"hypotheses": [CUSTOM["hypotheses"][0] | {"weight": 1.0 / 65}] * 65},
+        CUSTOM | {"offsets_mag": list(range(401)), "offset_weights": [1.0 / 401] * 401},
+        GALACTIC | {"parameters": {"spread_mag": 9.0}},
+        GALACTIC | {"parameters": {"magnitude": 9.0}},
+    ],
+)
+def test_a_custom_model_with_what_nobody_knows_is_refused(document):
+    with pytest.raises(SourceError) as refusal:
+        source_from_json(document)
+    assert refusal.value.allowed

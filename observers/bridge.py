@@ -4,7 +4,9 @@ import math
 from collections.abc import Sequence
 
 from observers.models import Instrument, InstrumentKind, Site
+from skytiles.depth.bands import nearest_band
 from skytiles.depth.gear import Gear
+from skytiles.night.mount_limits import MountLimits
 from skytiles.night.place import Place
 from skytiles.night.sun_rule import SolarRating
 from skytiles.planner.observers_to_plan import (
@@ -25,7 +27,22 @@ def place_of(site: Site) -> Place:
         longitude_deg=site.longitude_deg,
         height_m=site.height_m,
         min_altitude_deg=site.min_altitude_deg,
+        horizon=tuple((azimuth, altitude) for azimuth, altitude in site.horizon_mask),
     )
+
+
+def mount_of(instrument: Instrument) -> MountLimits:
+    """Where the instrument can point; an empty field limits nothing."""
+    given = {
+        "min_altitude_deg": instrument.mount_min_altitude_deg,
+        "max_altitude_deg": instrument.mount_max_altitude_deg,
+        "min_hour_angle_h": instrument.min_hour_angle_h,
+        "max_hour_angle_h": instrument.max_hour_angle_h,
+        "min_dec_deg": instrument.min_dec_deg,
+        "max_dec_deg": instrument.max_dec_deg,
+    }
+    limits = {name: value for name, value in given.items() if value is not None}
+    return MountLimits(crosses_meridian=instrument.crosses_meridian, **limits)
 
 
 def solar_rating_of(instrument: Instrument) -> SolarRating:
@@ -48,9 +65,12 @@ def gear_of(instrument: Instrument) -> Gear:
         obstruction=instrument.obstruction,
         throughput=instrument.throughput,
         read_noise_e=instrument.read_noise_e,
-        band=instrument.band,
+        band=nearest_band(instrument.band),
         exposure_s=instrument.exposure_s,
         n_exposures=instrument.n_exposures,
+        dark_e_per_s=instrument.dark_e_per_s,
+        full_well_e=instrument.full_well_e,
+        magnification=instrument.magnification,
     )
 
 
@@ -80,6 +100,7 @@ def planner_instrument_of(instrument: Instrument, *, n_tiles_left: int) -> Plann
         n_tiles_left=n_tiles_left,
         completeness=completeness,
         s_mag=s_mag,
+        mount=mount_of(instrument),
     )
 
 

@@ -17,6 +17,8 @@ class Site(models.Model):
     sky_brightness_mag = models.FloatField(default=20.5)
     seeing_arcsec = models.FloatField(default=3.0)
     min_altitude_deg = models.FloatField(default=20.0)
+    # The skyline as [azimuth_deg, altitude_deg] points: it shows where the home is.
+    horizon_mask = models.JSONField(default=list, blank=True)
     clear_chance = models.FloatField(default=0.6)
     created_at = models.DateTimeField()
 

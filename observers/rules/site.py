@@ -1,11 +1,14 @@
 """What a site may say of itself."""
 
-from collections.abc import Iterator
+import math
+from collections.abc import Iterator, Sequence
 from typing import Protocol
 
 from observers.rules.numbers import number_problems
 from observers.rules.problem import Problem
 
+# Enough for a tree every degree.
+MOST_HORIZON_POINTS = 360
 # A tenth of a degree is some ten kilometres: enough to plan with, too coarse to find a home.
 PUBLIC_STEP_DEG = 0.1
 
@@ -20,6 +23,7 @@ class SiteValues(Protocol):
     sky_brightness_mag: float
     seeing_arcsec: float
     min_altitude_deg: float
+    horizon_mask: Sequence[Sequence[float]]
     clear_chance: float
 
 
@@ -36,12 +40,34 @@ _RANGES = {
 
 def site_problems(site: SiteValues) -> list[Problem]:
     """Judge one site."""
-    return [*_name_problems(site.name), *number_problems(site, _RANGES)]
+    return [
+        *_name_problems(site.name),
+        *number_problems(site, _RANGES),
+        *_horizon_problems(site.horizon_mask),
+    ]
 
 
 def public_place_deg(latitude_deg: float, longitude_deg: float) -> tuple[float, float]:
     """A place as everybody may see it: rounded to 0.1 degree."""
     return (round(latitude_deg, 1) + 0.0, round(longitude_deg, 1) + 0.0)
+
+
+def _horizon_problems(points: Sequence[Sequence[float]]) -> Iterator[Problem]:
+    """One sentence: the points are many, and the first one tells what is wrong with all."""
+    azimuths = [point[0] % 360.0 for point in points if math.isfinite(point[0])]
+    is_sound = all(
+        0.0 <= azimuth <= 360.0 and -10.0 <= altitude <= 90.0 for azimuth, altitude in points
+    )
+    if not is_sound:
+        yield Problem(
+            "horizon_mask",
+            "Each point of the skyline is an azimuth from 0 to 360 degrees (north 0, east 90) and "
+            "an altitude from -10 to 90 degrees.",
+        )
+    elif len(set(azimuths)) < len(points):
+        yield Problem("horizon_mask", "The skyline has two points at the same azimuth.")
+    elif len(points) > MOST_HORIZON_POINTS:
+        yield Problem("horizon_mask", f"A skyline has at most {MOST_HORIZON_POINTS} points.")
 
 
 def _name_problems(name: str) -> Iterator[Problem]:

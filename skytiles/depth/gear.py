@@ -12,7 +12,10 @@ USUAL_PIXEL_ARCSEC = 2.0
 
 @dataclass(frozen=True)
 class Gear:
-    """What decides the depth of one series; `obstruction` is a share of the diameter."""
+    """What decides the depth of one series; `obstruction` is a share of the diameter.
+
+    `magnification` belongs to eyepieces and binoculars; None: the usual one of the kind.
+    """
 
     kind: str
     aperture_mm: float
@@ -23,14 +26,18 @@ class Gear:
     band: str = "clear"
     exposure_s: float = 60.0
     n_exposures: int = 4
+    dark_e_per_s: float = 0.0
+    full_well_e: float = 50000.0
+    magnification: float | None = None
 
 
-def camera_optics(gear: Gear) -> CameraOptics:
+def camera_optics(gear: Gear, *, height_m: float = 0.0) -> CameraOptics:
     """The optics of a camera, with a usual pixel where the owner gave none.
 
     Parameters
     ----------
-    gear : Gear    of kind "camera"
+    gear : Gear         of kind "camera"
+    height_m : float    of the site, metres
 
     Returns
     -------
@@ -47,4 +54,6 @@ def camera_optics(gear: Gear) -> CameraOptics:
         throughput=gear.throughput,
         read_noise_e=gear.read_noise_e,
         band=gear.band,
+        dark_e_per_s=gear.dark_e_per_s,
+        height_m=height_m,
     )

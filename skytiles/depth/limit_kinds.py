@@ -75,6 +75,9 @@ def m50_mag(limit_mag: float, limit_kind: str, *, s: float = SHARP_S_MAG) -> flo
     ------
     DepthError    for an unknown kind
 
+    Formula: 50 % and 5 sigma: m; 3 sigma: m - 0.55; 90 %: m + s ln 9; faintest star and estimate:
+    m - 0.5.
+
     Source: logistic detection curve of Veres & Chesley 2017 (its 90 % point lies s ln 9 above
     m50); 3 sigma to 5 sigma is 2.5 log10(5/3); half a magnitude of caution is an assumption.
     """
@@ -113,6 +116,8 @@ def limit_from_star_mag(star_mag: float, *, signal_to_noise: float) -> float:
     Raises
     ------
     DepthError    when the ratio is not a positive number
+
+    Formula: m_limit = m_star + 2.5 log10(snr / 5).
 
     Source: definition; exact where the sky, not the star, sets the noise.
     """

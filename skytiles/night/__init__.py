@@ -8,13 +8,16 @@ from skytiles.night.altitude import (
     sun_altitudes_deg,
     zenith_radec_deg,
 )
+from skytiles.night.horizon_mask import skyline_altitudes_deg
 from skytiles.night.moon import (
     moon_illuminated_fraction,
     moon_phase_angles_deg,
     moon_radec_deg,
 )
+from skytiles.night.mount_limits import NO_LIMITS, MountLimits
 from skytiles.night.night_error import NightError
 from skytiles.night.place import Place
+from skytiles.night.reach import reach_mask, reach_problems, reach_windows
 from skytiles.night.solar_rating import SolarRating
 from skytiles.night.solar_safety import solar_problems
 from skytiles.night.sun import sun_radec_deg
@@ -23,7 +26,9 @@ from skytiles.night.twilight import TWILIGHTS, dark_intervals
 from skytiles.night.windows import observable_mask, safe_intervals, tile_windows
 
 __all__ = [
+    "NO_LIMITS",
     "TWILIGHTS",
+    "MountLimits",
     "NightError",
     "Place",
     "SolarRating",
@@ -36,9 +41,13 @@ __all__ = [
     "moon_phase_angles_deg",
     "moon_radec_deg",
     "observable_mask",
+    "reach_mask",
+    "reach_problems",
+    "reach_windows",
     "refraction_deg",
     "safe_intervals",
     "sky_airmass",
+    "skyline_altitudes_deg",
     "solar_problems",
     "sun_altitudes_deg",
     "sun_limit_deg",

@@ -22,6 +22,8 @@ def airmass(altitudes_deg: Floats) -> Floats:
     -------
     (n,) float    no unit; inf below the horizon
 
+    Formula: X = 1 / (sin h + 0.50572 (h + 6.07995)^-1.6364), h in degrees.
+
     Source: Kasten & Young 1989, Applied Optics 28, 4735, eq. 3. Error: 3e-4 at the zenith.
     """
     altitudes = np.asarray(altitudes_deg, dtype=float)
@@ -41,6 +43,8 @@ def sky_airmass(altitudes_deg: Floats) -> Floats:
     -------
     (n,) float    no unit; 1 at the zenith, 5 at the horizon
 
+    Formula: X = (1 - 0.96 sin^2 z)^-0.5, z the zenith distance.
+
     Source: Krisciunas & Schaefer 1991, PASP 103, 1033, eq. 3.
     """
     risen_rad = np.radians(np.maximum(np.asarray(altitudes_deg, dtype=float), 0.0))
@@ -57,6 +61,8 @@ def refraction_deg(true_altitudes_deg: Floats) -> Floats:
     Returns
     -------
     (n,) float    degrees, at 1010 hPa and 10 C; 0 far below the horizon
+
+    Formula: R = 1.02 / tan(h + 10.3 / (h + 5.11)) arcmin, h in degrees.
 
     Source: Saemundsson 1986, Sky & Telescope 72, 70 (Meeus 1998, eq. 16.4).
     """
@@ -76,6 +82,8 @@ def refraction_of_apparent_deg(apparent_altitudes_deg: Floats) -> Floats:
     Returns
     -------
     (n,) float    degrees, at 1010 hPa and 10 C
+
+    Formula: R = 1 / tan(h + 7.31 / (h + 4.4)) arcmin, h in degrees.
 
     Source: Bennett 1982, Journal of Navigation 35, 255 (Meeus 1998, eq. 16.3).
     """

@@ -9,6 +9,7 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
+from skytiles.night.horizon_mask import HorizonPoints, check_horizon
 from skytiles.night.night_error import NightError
 
 Floats = npt.NDArray[np.float64]
@@ -20,12 +21,16 @@ _FLATTENING = 1.0 / 298.257223563
 
 @dataclass(frozen=True)
 class Place:
-    """A site on the Earth (WGS84, geodetic) and the altitude below which it cannot see."""
+    """A site on the Earth (WGS84, geodetic) and what it can see.
+
+    `horizon` holds (azimuth, altitude) of the skyline, degrees; it is as private as the place.
+    """
 
     latitude_deg: float
     longitude_deg: float
     height_m: float = 0.0
     min_altitude_deg: float = 20.0
+    horizon: HorizonPoints = ()
 
     def __post_init__(self) -> None:
         values = (self.latitude_deg, self.longitude_deg, self.height_m, self.min_altitude_deg)
@@ -36,6 +41,7 @@ class Place:
                 "numbers, with the latitude from -90 to 90 degrees",
                 "correct the site",
             )
+        check_horizon(self.horizon)
 
 
 def zenith_vectors(places: Sequence[Place]) -> Floats:

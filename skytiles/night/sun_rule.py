@@ -41,6 +41,8 @@ def sun_limit_deg(place: Place) -> float:
     -------
     float    degrees, at most -1
 
+    Formula: h = -1 - 0.03 sqrt(height in m).
+
     Source: dip of the horizon 0.03 degree x sqrt(height in m), common practice of navigation.
     """
     return SUN_LIMIT_DEG - _DIP_DEG_PER_ROOT_M * math.sqrt(max(place.height_m, 0.0))

@@ -5,14 +5,16 @@ from __future__ import annotations
 import numpy as np
 import numpy.typing as npt
 
-from skytiles.night.altitude import altitude_azimuth_deg, altitudes_deg, sun_altitudes_deg
+from skytiles.night.altitude import altitudes_deg, sun_altitudes_deg
 from skytiles.night.intervals import (
     MINUTE_D,
     Interval,
     common_intervals,
     intervals_below_zero,
 )
+from skytiles.night.mount_limits import NO_LIMITS, MountLimits
 from skytiles.night.place import Place
+from skytiles.night.reach import is_limited, reach_mask, reach_windows
 from skytiles.night.solar_rating import SolarRating
 from skytiles.night.sun_rule import (
     MARGIN_D,
@@ -41,8 +43,9 @@ def tile_windows(
     hours: float,
     sun_below_deg: float = -12.0,
     solar: SolarRating | None = None,
+    mount: MountLimits = NO_LIMITS,
 ) -> list[Interval]:
-    """When a tile is up, the sky dark, and the solar rule content.
+    """When a tile is within reach, the sky dark, and the solar rule content.
 
     Parameters
     ----------
@@ -51,6 +54,7 @@ def tile_windows(
     start_mjd, hours : float         where the search starts (MJD, UTC) and how long it is
     sun_below_deg : float            the Sun's centre must be below this, degrees; 90: any time
     solar : SolarRating or None      the instrument; None: only up and dark
+    mount : MountLimits              where it can point
 
     Returns
     -------
@@ -65,11 +69,7 @@ def tile_windows(
     """
     check_stretch(start_mjd, hours)
     end_mjd = start_mjd + hours / 24.0
-    windows = intervals_below_zero(
-        lambda mjds: place.min_altitude_deg - altitude_azimuth_deg(place, ra_deg, dec_deg, mjds)[0],
-        start_mjd=start_mjd,
-        end_mjd=end_mjd,
-    )
+    windows = reach_windows(place, mount, ra_deg, dec_deg, start_mjd=start_mjd, end_mjd=end_mjd)
     dark = dark_intervals(place, start_mjd=start_mjd, hours=hours, sun_below_deg=sun_below_deg)
     windows = common_intervals(windows, dark)
     if solar is None:
@@ -128,8 +128,9 @@ def observable_mask(
     duration_s: float = 0.0,
     sun_below_deg: float = -12.0,
     lease_grace_s: float = LEASE_GRACE_S,
+    mount: MountLimits = NO_LIMITS,
 ) -> Bools:
-    """Which tiles can be started at which times: up, dark and safe until the series is over.
+    """Which tiles can be started when: within reach, dark and safe until the series is over.
 
     Parameters
     ----------
@@ -140,6 +141,7 @@ def observable_mask(
     duration_s : float                length of the series, seconds
     sun_below_deg : float             the Sun's centre must stay below this, degrees
     lease_grace_s : float             the solar rule is judged this long beyond the series
+    mount : MountLimits               where the instrument can point
 
     Returns
     -------
@@ -154,6 +156,8 @@ def observable_mask(
     is_up = altitudes_deg([place], ras_deg, decs_deg, moments)[0] >= place.min_altitude_deg
     is_dark = sun_altitudes_deg([place], moments)[0] < sun_below_deg
     is_open = np.logical_and.reduce(np.split(is_up & is_dark, 3, axis=1))
+    if is_limited(place, mount):
+        is_open &= reach_mask(place, mount, ras_deg, decs_deg, mjds, duration_s=duration_s)
     lease_d = (duration_s + lease_grace_s) / _DAY_S
     return np.asarray(is_open & safe_mask(place, rating, ras_deg, decs_deg, mjds, lease_d=lease_d))
 

@@ -8,6 +8,7 @@ import numpy as np
 import numpy.typing as npt
 
 from skytiles.night.altitude import altitudes_deg, sun_altitudes_deg
+from skytiles.night.reach import is_limited, reach_mask
 from skytiles.night.windows import observable_mask
 from skytiles.planner import reasons
 from skytiles.planner.forecast_limits import forecast_limits_mag
@@ -166,11 +167,11 @@ def _block(
     is_high = altitudes >= observer.place.min_altitude_deg
     is_ever = is_high.any(axis=1)
     if not is_ever.any():
-        return None, reasons.never_up(observer.place.min_altitude_deg, outlook.hours)
+        return None, reasons.never_up(outlook.hours)
     places, altitudes = places[is_ever], altitudes[is_ever]
     is_allowed = _are_observable(observer, instrument, outlook, places, slots)
     if not is_allowed.any():
-        return None, reasons.TOO_NEAR_SUN
+        return None, _why_nothing_is_allowed(observer, instrument, outlook, places, slots)
     limits = outlook.limits_mag(observer, instrument, places, mids_mjd, altitudes)
     is_allowed &= np.isfinite(limits)
     is_allowed &= ~_are_same_look(observer, instrument, outlook.tiles, places, slots)
@@ -207,7 +208,28 @@ def _are_observable(
         slots.starts_mjd,
         duration_s=duration_s,
         sun_below_deg=outlook.sun_below_deg,
+        mount=instrument.mount,
     )
+
+
+def _why_nothing_is_allowed(
+    observer: PlannerObserver,
+    instrument: PlannerInstrument,
+    outlook: Outlook,
+    places: Ints,
+    slots: StartSlots,
+) -> str:
+    if not is_limited(observer.place, instrument.mount):
+        return reasons.TOO_NEAR_SUN
+    is_free = reach_mask(
+        observer.place,
+        instrument.mount,
+        outlook.tiles.ras_deg[places],
+        outlook.tiles.decs_deg[places],
+        slots.starts_mjd,
+        duration_s=instrument.series_s,
+    )
+    return reasons.TOO_NEAR_SUN if is_free.any() else reasons.OUT_OF_REACH
 
 
 def _are_same_look(

@@ -5,13 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from skytiles.depth.gear import Gear
+from skytiles.night.mount_limits import NO_LIMITS, MountLimits
 from skytiles.night.place import Place
 from skytiles.night.sun_rule import SolarRating
 
 
 @dataclass(frozen=True)
 class PlannerInstrument:
-    """One instrument: its depth, its solar rating, its series and the tile grid it uses.
+    """One instrument: its depth, its solar rating, its mount, its series and its tile grid.
 
     `completeness` and `s_mag` are what is expected of its examination (ledger: c and s);
     `reference_mag` is the depth of what its frames are compared with, None if deep enough.
@@ -28,6 +29,7 @@ class PlannerInstrument:
     completeness: float = 0.85
     s_mag: float = 0.2
     reference_mag: float | None = None
+    mount: MountLimits = NO_LIMITS
 
     @property
     def band(self) -> str:

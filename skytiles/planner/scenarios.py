@@ -15,10 +15,12 @@ Ints = npt.NDArray[np.int64]
 
 # Up to this many (hypothesis, offset) nodes are planned with as they are.
 MOST_SCENARIOS = 48
-# Stands for "no light" where magnitudes are compared.
-_DARK_MAG = 60.0
+# No frame of a network goes deeper, so beyond it one magnitude is as dark as another.
+_DARK_MAG = 25.0
+# Where dust counts, scenarios are compared in these two bands.
+_COMPARED_BANDS = ("clear", "I")
 # Pixels at a time where every pixel has its own offset weights.
-_CHUNK = 4096
+_CHUNK = 1024
 
 
 @dataclass(frozen=True, eq=False)
@@ -49,7 +51,7 @@ class Scenarios:
         n_offsets = len(self.source_model.offsets_mag)
         hypotheses, offsets = np.divmod(self.nodes, n_offsets)
         by_time = self.source_model.magnitudes(ts_d, band).T
-        magnitudes: Floats = by_time[:, hypotheses] + self.source_model.offsets_mag[offsets]
+        magnitudes: Floats = by_time[:, hypotheses] + self.source_model.offsets_in(band)[offsets]
         return magnitudes
 
     def remaining(self, ledger: Ledger) -> Floats:
@@ -63,25 +65,27 @@ class Scenarios:
         -------
         (p, n) float    its sum is the sum of p (1 - u) less `ledger.searched`
         """
-        state_of, states = ledger.miss_states()
-        weighted = states * self.source_model.weights[None, :, None]
         findable = ledger.probabilities * (1.0 - ledger.undetectable)
-        if ledger.offset_weights.ndim == 1:
-            by_state = self._merged(weighted * ledger.offset_weights)
-            return findable[:, None] * by_state[state_of]
-        parts = []
-        for start in range(0, len(findable), _CHUNK):
-            rows = slice(start, start + _CHUNK)
-            nodes = weighted[state_of[rows]] * ledger.offset_weights[rows, None, :]
-            parts.append(findable[rows, None] * self._merged(nodes))
-        return np.concatenate(parts) if parts else np.empty((0, self.n_scenarios))
+        remaining = np.empty((len(findable), self.n_scenarios))
+        for pixels, states_of, states in ledger.miss_states():
+            weighted = states * self.source_model.weights.astype(states.dtype)[None, :, None]
+            if ledger.offset_weights.ndim == 1:
+                remaining[pixels] = self._merged(weighted * ledger.offset_weights)[states_of]
+                continue
+            for start in range(0, len(pixels), _CHUNK):
+                rows = slice(start, start + _CHUNK)
+                nodes = weighted[states_of[rows]]
+                nodes *= ledger.offset_weights[pixels[rows], None, :]
+                remaining[pixels[rows]] = self._merged(nodes)
+        remaining *= findable[:, None]
+        return remaining
 
     def _merged(self, by_node: Floats) -> Floats:
         """Sum the nodes (g, h, b) of each scenario: (g, n)."""
         flat = by_node.reshape(len(by_node), -1)
         if self.n_scenarios == flat.shape[1]:
             return flat
-        belongs = np.zeros((flat.shape[1], self.n_scenarios))
+        belongs = np.zeros((flat.shape[1], self.n_scenarios), flat.dtype)
         belongs[np.arange(flat.shape[1]), self.scenario_of] = 1.0
         return flat @ belongs
 
@@ -101,9 +105,9 @@ def make_scenarios(
     -------
     Scenarios    all nodes as they are when there are at most `most`
     """
-    by_time = source_model.magnitudes(ts_d, "clear")
-    nodes = by_time[:, None, :] + source_model.offsets_mag[None, :, None]
-    brightness = np.minimum(nodes.reshape(-1, by_time.shape[1]), _DARK_MAG)
+    is_dusty = source_model.extinctions_mag is not None
+    parts = [_brightness(source_model, ts_d, band) for band in _COMPARED_BANDS[: 1 + is_dusty]]
+    brightness = np.minimum(np.concatenate(parts, axis=1), _DARK_MAG)
     weights = np.outer(source_model.weights, source_model.offset_weights).reshape(-1)
     scenario_of = _split(brightness, weights + 1e-12, most=most)
     n_scenarios = int(scenario_of.max()) + 1
@@ -112,6 +116,13 @@ def make_scenarios(
         for number in range(n_scenarios)
     ]
     return Scenarios(source_model, scenario_of, np.array(middles, dtype=np.int64))
+
+
+def _brightness(source_model: SourceModel, ts_d: Floats, band: str) -> Floats:
+    """(h x b, t) magnitudes of all nodes in one band."""
+    by_time = source_model.magnitudes(ts_d, band)
+    nodes = by_time[:, None, :] + source_model.offsets_in(band)[None, :, None]
+    return nodes.reshape(-1, by_time.shape[1])
 
 
 def _split(brightness: Floats, weights: Floats, *, most: int) -> Ints:

@@ -52,7 +52,7 @@ def read_exposure(header: Header) -> Exposure:
             notes = ("The frame is a stack without DATE-END: the time is that of its beginning.",)
     if middle is None or not _EARLIEST_MJD < middle < _LATEST_MJD:
         raise HeaderError(
-            given="a header without a possible date and time of the exposure",
+            given="it has no possible date and time of the exposure",
             allowed="DATE-OBS with date and time, DATE-AVG, MJD-OBS or JD",
             advice="type the middle of the exposure in UTC by hand",
         )
@@ -111,7 +111,7 @@ def _duration_s(header: Header) -> float:
     duration = number(header, "EXPTIME", "EXPOSURE", "XPOSURE", "EXP_TIME", "TELAPSE")
     if duration is None or duration < 0.0:
         raise HeaderError(
-            given="a header without EXPTIME" if duration is None else f"EXPTIME = {duration:g}",
+            given="it has no EXPTIME" if duration is None else f"EXPTIME = {duration:g}",
             allowed="EXPTIME or EXPOSURE in seconds",
             advice="type the exposure by hand",
         )

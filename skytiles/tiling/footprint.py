@@ -1,7 +1,6 @@
-"""The patch of sky under one frame: a convex polygon of great circles, or a circle."""
+"""The patch of sky under one frame: a polygon of great circles, a circle, or several of these."""
 
 import math
-from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any, Literal
 
@@ -11,6 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 from skytiles.errors import FootprintError
 from skytiles.sphere.angles import ras_decs_deg, separations_deg, unit_vectors
 from skytiles.sphere.solid_angle import cap_area_deg2, polygon_area_deg2
+from skytiles.tiling.outline_shape import fan_triangles, narrowest_width_deg
 
 Floats = NDArray[np.float64]
 
@@ -18,19 +18,26 @@ Floats = NDArray[np.float64]
 LARGEST_SIDE_DEG = 150.0
 _SMALLEST_SIDE_DEG = 1e-5
 _MOST_CORNERS = 64
+# With more corners than this an outline has points along its sides.
+_MOST_TRUE_CORNERS = 8
 # Sine of angles that count as none: of a side without length, or of a corner beyond a side.
 _STRAIGHT = 1e-12
 
 
 @dataclass(frozen=True, eq=False)
 class Footprint:
-    """Polygon: corners (v, 3), counter-clockwise (inside on the left). Circle: no corners."""
+    """Polygon: corners (v, 3), counter-clockwise (inside on the left). Circle: no corners.
 
-    shape: Literal["polygon", "circle"]
+    `pieces` are convex or circles and together the footprint exactly: the pictures of a mosaic, or
+    the triangles of an outline that is not convex. Empty for what is convex or a circle itself.
+    """
+
+    shape: Literal["polygon", "circle", "mosaic"]
     centre_ra_deg: float
     centre_dec_deg: float
     corners: Floats
     diameter_deg: float = 0.0
+    pieces: tuple["Footprint", ...] = ()
 
     @property
     def centre(self) -> Floats:
@@ -44,16 +51,23 @@ class Footprint:
 
     @property
     def area_deg2(self) -> float:
-        """Area on the sphere, square degrees."""
+        """Area on the sphere, square degrees; where parts of a mosaic overlap it counts twice."""
+        if self.pieces:
+            return sum(piece.area_deg2 for piece in self.pieces)
         if self.shape == "circle":
             return float(cap_area_deg2(self.diameter_deg / 2.0))
         return polygon_area_deg2(self.corners)
 
     @property
     def smallest_side_deg(self) -> float:
-        """Shortest side of a polygon, diameter of a circle, degrees."""
+        """Shortest side of a polygon, diameter of a circle, degrees.
+
+        Of a mosaic, or of an outline with points along its sides, the narrowest width of the whole.
+        """
         if self.shape == "circle":
             return self.diameter_deg
+        if self.pieces or len(self.corners) > _MOST_TRUE_CORNERS:
+            return narrowest_width_deg(self.corners, self.centre)
         ras, decs = ras_decs_deg(self.corners)
         return float(separations_deg(ras, decs, np.roll(ras, -1), np.roll(decs, -1)).min())
 
@@ -65,6 +79,13 @@ class Footprint:
                 "ra_deg": self.centre_ra_deg,
                 "dec_deg": self.centre_dec_deg,
                 "diameter_deg": self.diameter_deg,
+            }
+        if self.shape == "mosaic":
+            return {
+                "shape": "mosaic",
+                "ra_deg": self.centre_ra_deg,
+                "dec_deg": self.centre_dec_deg,
+                "parts": [part.to_json() for part in self.pieces],
             }
         return {"shape": "polygon", "corners_deg": self.corners_deg.tolist()}
 
@@ -91,7 +112,7 @@ def rectangle_footprint(
 
     Source: gnomonic projection (Calabretta & Greisen 2002, A&A 395, 1077, section 5.1.3).
     """
-    _refuse_bad_position(ra_deg, dec_deg)
+    refuse_bad_position(ra_deg, dec_deg)
     _refuse_bad_angle("width_deg", width_deg)
     _refuse_bad_angle("height_deg", height_deg)
     _refuse_bad_number("rotation_deg", rotation_deg)
@@ -160,7 +181,7 @@ def circle_footprint(*, ra_deg: float, dec_deg: float, diameter_deg: float) -> F
 
     Source: definition.
     """
-    _refuse_bad_position(ra_deg, dec_deg)
+    refuse_bad_position(ra_deg, dec_deg)
     _refuse_bad_angle("diameter_deg", diameter_deg)
     no_corners = np.zeros((0, 3))
     return Footprint("circle", ra_deg % 360.0, dec_deg, no_corners, diameter_deg=diameter_deg)
@@ -180,6 +201,22 @@ def polygon_footprint(corners_deg: ArrayLike) -> Footprint:
 
     Source: definition.
     """
+    return vector_footprint(corner_vectors(corners_deg))
+
+
+def corner_vectors(corners_deg: ArrayLike) -> Floats:
+    """Unit vectors of corners given in degrees.
+
+    Parameters
+    ----------
+    corners_deg : (v, 2) float    right ascension and declination of 3 to 64 corners
+
+    Returns
+    -------
+    (v, 3) float    FootprintError for anything else
+
+    Source: definition.
+    """
     corners = np.asarray(corners_deg, dtype=np.float64)
     if corners.ndim != 2 or corners.shape[1] != 2 or not 3 <= len(corners) <= _MOST_CORNERS:
         raise FootprintError(
@@ -188,8 +225,8 @@ def polygon_footprint(corners_deg: ArrayLike) -> Footprint:
             advice="give the corners in order, in degrees",
         )
     for ra, dec in corners:
-        _refuse_bad_position(float(ra), float(dec))
-    return vector_footprint(unit_vectors(corners[:, 0], corners[:, 1]))
+        refuse_bad_position(float(ra), float(dec))
+    return unit_vectors(corners[:, 0], corners[:, 1])
 
 
 def vector_footprint(vectors: Floats) -> Footprint:
@@ -211,41 +248,29 @@ def vector_footprint(vectors: Floats) -> Footprint:
     return Footprint("polygon", float(ra), float(dec), corners)
 
 
-def footprint_from_json(fields: Mapping[str, Any]) -> Footprint:
-    """Shape of a frame as stored.
+def outline_footprint(vectors: Floats) -> Footprint:
+    """Frame given by points along its outline, which may bend inwards.
 
     Parameters
     ----------
-    fields : dict    {"shape": "polygon", "corners_deg": [[ra, dec], ...]} or
-        {"shape": "circle", "ra_deg": x, "dec_deg": y, "diameter_deg": d}
+    vectors : (v, 3) float    unit vectors in order, either winding
 
     Returns
     -------
-    Footprint    FootprintError for anything else
+    Footprint    FootprintError unless every side can be seen from the middle
 
-    Source: our own JSON.
+    Source: definition; what is not convex is the union of the triangles from its middle.
     """
-    try:
-        if fields["shape"] == "circle":
-            names = ("ra_deg", "dec_deg", "diameter_deg")
-            return circle_footprint(**{name: float(fields[name]) for name in names})
-        if fields["shape"] == "polygon":
-            return polygon_footprint(fields["corners_deg"])
-    except (KeyError, TypeError) as error:
-        raise _json_error(f"a footprint that lacks or garbles {error}") from error
-    except FootprintError:
-        raise
-    except ValueError as error:
-        raise _json_error(f"a footprint with {error}") from error
-    raise _json_error(f"shape {fields['shape']!r}")
-
-
-def _json_error(given: str) -> FootprintError:
-    return FootprintError(
-        given=given,
-        allowed='"polygon" with corners_deg, or "circle" with ra_deg, dec_deg, diameter_deg',
-        advice="send the footprint as the server once gave it",
-    )
+    points = _without_repeats(vectors)
+    if len(points) >= 3 and any(_is_convex(winding) for winding in (points, points[::-1])):
+        return vector_footprint(points)
+    triangles = fan_triangles(points)
+    if triangles is None:
+        return vector_footprint(points)
+    ra, dec = ras_decs_deg(triangles[0, 0])
+    pieces = tuple(vector_footprint(triangle) for triangle in triangles)
+    corners = np.ascontiguousarray(triangles[:, 1])
+    return Footprint("polygon", float(ra), float(dec), corners, pieces=pieces)
 
 
 def _without_repeats(vectors: Floats) -> Floats:
@@ -278,7 +303,17 @@ def _is_convex(corners: Floats) -> bool:
     return bool((heights[others] >= -_STRAIGHT).all() and (heights.max() > _STRAIGHT))
 
 
-def _refuse_bad_position(ra_deg: float, dec_deg: float) -> None:
+def refuse_bad_position(ra_deg: float, dec_deg: float) -> None:
+    """Refuse what is no direction.
+
+    Parameters
+    ----------
+    ra_deg, dec_deg : float    degrees; right ascensions from -360 to 720 are understood
+
+    Raises
+    ------
+    FootprintError    for anything else
+    """
     if not (math.isfinite(ra_deg) and -360.0 <= ra_deg <= 720.0 and -90.0 <= dec_deg <= 90.0):
         raise FootprintError(
             given=f"right ascension {ra_deg}, declination {dec_deg}",

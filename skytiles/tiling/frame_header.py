@@ -16,6 +16,11 @@ from skytiles.tiling.tan_solution import (
     read_tan_solution,
 )
 
+# Said of a frame whose size is known and whose angle is not.
+ANGLE_UNKNOWN = (
+    "The header has no plate solution, so the camera's angle is unknown: "
+    "only the circle that is inside at any angle was counted."
+)
 # Arcsec per radian over micrometres per millimetre (definition).
 _ARCSEC_MM_PER_UM = 206.264806247
 
@@ -151,12 +156,8 @@ def _pointed(cards: Header) -> _Seen:
     if sides is None:
         note = "The header tells neither a plate solution nor the size of the field."
         return _Seen(None, ra, dec, notes=(note,))
-    note = (
-        "The header has no plate solution, so the camera's angle is unknown: "
-        "only the circle that is inside at any angle was counted."
-    )
     circle = circle_footprint(ra_deg=ra, dec_deg=dec, diameter_deg=min(sides))
-    return _Seen(circle, ra, dec, width_deg=sides[0], height_deg=sides[1], notes=(note,))
+    return _Seen(circle, ra, dec, width_deg=sides[0], height_deg=sides[1], notes=(ANGLE_UNKNOWN,))
 
 
 def _position_deg(cards: Header) -> tuple[float, float]:
@@ -165,7 +166,7 @@ def _position_deg(cards: Header) -> tuple[float, float]:
             ra, dec = _angle_deg(cards, ra_key, hours=True), _angle_deg(cards, dec_key, hours=False)
             return _judged_position(ra, dec)
     raise HeaderError(
-        given="a header without a position",
+        given="it has no position",
         allowed="a plate solution (CTYPE1 ...), OBJCTRA and OBJCTDEC, or RA and DEC",
         advice="solve the frame with a plate solver, or type the position by hand",
     )

@@ -104,6 +104,30 @@ def lay_tiles(
     )
 
 
+def tile_probabilities(
+    region: Region, ras_deg: Floats, decs_deg: Floats, *, width_deg: float, height_deg: float
+) -> Floats:
+    """Probability under tiles that were laid before.
+
+    Parameters
+    ----------
+    region : Region    any, not only the one that they were laid for
+    ras_deg, decs_deg : (k,) float    centres, degrees
+    width_deg, height_deg : float    sides of all of them, degrees
+
+    Returns
+    -------
+    (k,) float    as lay_tiles counts them; 0 where nothing of the region is
+
+    Source: our definition (DEVELOPERS.md, regions and tiles).
+    """
+    order, parts, weights = _parts(region, min(width_deg, height_deg))
+    lattice = make_lattice(width_deg, height_deg)
+    return _tile_probabilities(
+        lattice, ras_deg, decs_deg, order=order, parts=parts, weights=weights
+    )
+
+
 def _parts(region: Region, side_deg: float) -> tuple[int, Ints, Floats]:
     """The region's pixels, cut where tiles are small: order, pixels and probabilities."""
     order = region.order

@@ -42,7 +42,7 @@ def pixels_under_many(footprints: Sequence[Footprint], order: int) -> PixelLists
 
     Parameters
     ----------
-    footprints : Footprint    m polygons and circles, mixed
+    footprints : Footprint    m polygons, circles and mosaics, mixed
     order : int    0..29
 
     Returns
@@ -52,6 +52,8 @@ def pixels_under_many(footprints: Sequence[Footprint], order: int) -> PixelLists
 
     Source: definition; the same pixels as healpy.query_polygon(inclusive=False).
     """
+    if any(footprint.pieces for footprint in footprints):
+        return _unions(footprints, order)
     corners = [footprint.corners for footprint in footprints]
     # Only circles have no corners.
     counts = np.fromiter(map(len, corners), dtype=np.int64, count=len(corners))
@@ -60,6 +62,26 @@ def pixels_under_many(footprints: Sequence[Footprint], order: int) -> PixelLists
     circles = pixels_inside(_circle_caps([f for f in footprints if f.shape == "circle"]), order)
     polygons = _polygon_caps([c for c in corners if len(c)], counts[counts > 0])
     return _interleaved(counts == 0, pixels_inside(polygons, order), circles)
+
+
+def _unions(footprints: Sequence[Footprint], order: int) -> PixelLists:
+    """Pixels under any piece of each footprint, each once."""
+    owned = [(j, leaf) for j, footprint in enumerate(footprints) for leaf in _leaves(footprint)]
+    found = pixels_under_many([leaf for _, leaf in owned], order)
+    owners = np.repeat([j for j, _ in owned], np.diff(found.starts)).astype(np.int64)
+    places = np.lexsort((found.pixels, owners))
+    owners, pixels = owners[places], found.pixels[places]
+    is_first = np.ones(len(pixels), dtype=bool)
+    is_first[1:] = (np.diff(owners) != 0) | (np.diff(pixels) != 0)
+    starts = np.searchsorted(owners[is_first], np.arange(len(footprints) + 1))
+    return PixelLists(starts.astype(np.int64), pixels[is_first])
+
+
+def _leaves(footprint: Footprint) -> list[Footprint]:
+    """The convex polygons and circles that a footprint is made of."""
+    if not footprint.pieces:
+        return [footprint]
+    return [leaf for piece in footprint.pieces for leaf in _leaves(piece)]
 
 
 def pixels_under_tiles(

@@ -10,7 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 from skytiles.errors import HeaderError
 from skytiles.sphere.angles import ras_decs_deg, unit_vectors
 from skytiles.sphere.precession import precession_from_j2000
-from skytiles.tiling.footprint import Footprint, vector_footprint
+from skytiles.tiling.footprint import Footprint, outline_footprint
 from skytiles.tiling.header_values import Header, number, word
 
 Floats = NDArray[np.float64]
@@ -23,6 +23,9 @@ _FK5_FROM_Y = 1984.0
 _EARLIEST_EQUINOX_Y, _LATEST_EQUINOX_Y = 1900.0, 2100.0
 # Beyond these a solution is damaged: pixels of an image, degrees per pixel.
 _MOST_PIXELS, _LARGEST_STEP_DEG = 1e7, 10.0
+# A side that bends by more than this gets points along it, at most 16.
+_BEND_PX = 0.5
+_FINEST_STEPS = 32
 _SIP_TERM = re.compile(r"^[AB]_(\d)_(\d)$")
 
 
@@ -82,12 +85,43 @@ class TanSolution:
         return ras_decs_deg(self.vectors(xs, ys))
 
     def footprint(self, *, width_px: float, height_px: float) -> Footprint:
-        """The outline of an image, from the outer corners of its corner pixels."""
-        right, top = width_px + 0.5, height_px + 0.5
-        corners = self.vectors([0.5, right, right, 0.5], [0.5, 0.5, top, top])
+        """The outline of an image, from the outer corners of its corner pixels.
+
+        Where distortion bends its sides by more than half a pixel, points stand along them.
+        """
         ras, decs = self.ras_decs_deg([(width_px + 1) / 2], [(height_px + 1) / 2])
-        outline = vector_footprint(corners)
+        outline = outline_footprint(self._border(width_px, height_px))
         return replace(outline, centre_ra_deg=float(ras[0]), centre_dec_deg=float(decs[0]))
+
+    def _border(self, width_px: float, height_px: float) -> Floats:
+        """Directions along the border, no more than it takes."""
+        finest = self.vectors(*_border_px(width_px, height_px, steps=_FINEST_STEPS))
+        if not self.sip_x and not self.sip_y:
+            return np.asarray(finest[::_FINEST_STEPS])
+        pixel_rad = math.radians(math.sqrt(abs(float(np.linalg.det(self.cd_deg)))))
+        for steps in (1, 2, 4, 8):
+            if _bend_rad(finest, _FINEST_STEPS // steps) <= _BEND_PX * pixel_rad:
+                return np.asarray(finest[:: _FINEST_STEPS // steps])
+        return np.asarray(finest[::2])
+
+
+def _border_px(width_px: float, height_px: float, *, steps: int) -> tuple[Floats, Floats]:
+    """Pixel positions round an image, from corner to corner in equal steps."""
+    xs = np.array([0.5, width_px + 0.5, width_px + 0.5, 0.5])
+    ys = np.array([0.5, 0.5, height_px + 0.5, height_px + 0.5])
+    shares = np.arange(steps) / steps
+    return tuple(
+        (ends + np.multiply.outer(shares, np.roll(ends, -1) - ends)).T.ravel() for ends in (xs, ys)
+    )
+
+
+def _bend_rad(border: Floats, stride: int) -> float:
+    """How far a closed border strays from great circles through every so-manieth point."""
+    starts = border[::stride]
+    normals = np.cross(starts, np.roll(starts, -1, axis=0))
+    normals /= np.linalg.norm(normals, axis=1, keepdims=True)
+    between = border.reshape(len(starts), stride, 3)
+    return float(np.abs(np.einsum("sij,sj->si", between, normals)).max())
 
 
 def _polynomial(terms: dict[tuple[int, int], float], dx: Floats, dy: Floats) -> Floats:

@@ -134,6 +134,7 @@ def test_the_planners_mask_is_never_more_permissive(place, rating, targets, day,
 @given(place=places, rating=st.one_of(eyes, robots), target=directions, day=st.floats(59e3, 63e3))
 def test_safe_intervals_hold_what_they_promise(place, rating, target, day):
     intervals = safe_intervals(place, rating, *target, start_mjd=day, end_mjd=day + 1.0)
-    for start, end in intervals:
+    # Of a window shorter than twice the slack nothing would be left to ask about.
+    for start, end in [(a, b) for a, b in intervals if b - a > 0.2 * MINUTE]:
         found = ask(place, rating, target, start + 0.1 * MINUTE, end - 0.1 * MINUTE)
         assert [problem for problem in found if "On the way" not in problem] == []

@@ -274,7 +274,7 @@ def test_reasons_say_what_is_the_matter(region, tiles):
     check(reasons.NO_GRID, {"instruments": [camera(1001, side_deg=3.3)]})
     check(reasons.not_free(12), {"free_from_mjd": NOW_MJD + 1.0})
     check(reasons.no_darkness(6), {"longitude_deg": -165.0}, hours=6.0)
-    check(reasons.never_up(20, 12), {"latitude_deg": -70.0})
+    check(reasons.never_up(12), {"latitude_deg": -70.0})
     blind = camera(1001, side_deg=2.5, reference_mag=-30.0)
     check(reasons.TOO_SHALLOW, {"instruments": [blind]})
 

@@ -177,7 +177,7 @@ REFUSED = {
     ),
     "milliseconds by the end": (
         POINTED | {"EXPOSURE": 5000.0, "DATE-END": "2027-03-14T05:06:12"},
-        "if it was 5 s",
+        "If it was 5 s",
     ),
     "FK4": (POINTED | {"EQUINOX": 1950.0}, "equinox 1950"),
     "projection": (SOLVED | {"CTYPE1": "RA---AIT", "CTYPE2": "DEC--AIT"}, "plate solver"),

@@ -1,12 +1,12 @@
 """Rows of campaigns as values of skytiles, and back; nothing else translates between them."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Iterable, Sequence
 from datetime import UTC, datetime, timedelta
 
 import numpy as np
 import numpy.typing as npt
 
-from campaigns.models import Campaign, Claim, Frame, RegionRevision, Tile
+from campaigns.models import Campaign, Claim, Constraint, Frame, RegionRevision, Tile
 from campaigns.rules.examination import PROGRAM_WAYS, completeness_of
 from skytiles.depth.limit_kinds import default_s_mag, effective_limit_mag, m50_mag
 from skytiles.ledger.ledger import Ledger
@@ -14,12 +14,20 @@ from skytiles.ledger.ledger_frame import LedgerFrame
 from skytiles.ledger.undetectable import undetectable_fraction
 from skytiles.planner.observers_to_plan import HeldClaim, RecentPointing
 from skytiles.planner.tiles_to_plan import PlannerTiles, make_planner_tiles
+from skytiles.region.constraint_json import constraint_from_json
+from skytiles.region.constraints import AnyConstraint, MapConstraint
+from skytiles.region.galactic_prior import GalacticPrior
+from skytiles.region.read_map import read_sky_map
 from skytiles.region.region import Region
+from skytiles.source.galactic_offsets import PlacedSource, place_source
+from skytiles.source.galaxy import galactic_prior_of
 from skytiles.source.source_json import source_from_json
+from skytiles.source.source_model import SourceModel
 from skytiles.sphere.healpix_door import pixel_centres
 from skytiles.tiling.covered_many import covered_pixels_many
-from skytiles.tiling.footprint import Footprint, footprint_from_json
-from skytiles.tiling.lay_tiles import tile_footprint
+from skytiles.tiling.footprint import Footprint
+from skytiles.tiling.footprint_json import footprint_from_json
+from skytiles.tiling.lay_tiles import tile_footprint, tile_probabilities
 
 _MJD_EPOCH = datetime(1858, 11, 17, tzinfo=UTC)
 _DAY = timedelta(days=1)
@@ -49,11 +57,13 @@ def probabilities_of(region: RegionRevision) -> npt.NDArray[np.float64]:
     return np.frombuffer(bytes(region.probabilities), dtype="<f8")
 
 
-def region_row(region: Region, *, campaign: Campaign, made_at: datetime) -> RegionRevision:
-    """The first revision of a campaign's region, not saved yet."""
+def region_row(
+    region: Region, *, campaign: Campaign, made_at: datetime, revision: int = 1
+) -> RegionRevision:
+    """A revision of a campaign's region, not saved yet."""
     return RegionRevision(
         campaign=campaign,
-        revision=1,
+        revision=revision,
         order=region.order,
         pixels=region.pixels.astype("<i8").tobytes(),
         probabilities=region.probabilities.astype("<f8").tobytes(),
@@ -61,6 +71,7 @@ def region_row(region: Region, *, campaign: Campaign, made_at: datetime) -> Regi
         area_deg2={key: float(value) for key, value in region.area_deg2.items()},
         peak={"ra_deg": float(region.peak_ra_deg), "dec_deg": float(region.peak_dec_deg)},
         notes=list(region.notes),
+        overlap=region.overlap,
         made_at=made_at,
     )
 
@@ -80,17 +91,74 @@ def region_of(row: RegionRevision) -> Region:
     )
 
 
+def constraint_of(row: Constraint, *, open_upload: Callable[[str], bytes]) -> AnyConstraint:
+    """A piece of direction information; `open_upload` gives the bytes of a kept file."""
+    if row.kind == MapConstraint.kind:
+        sky_map = read_sky_map(open_upload(row.upload_sha256))
+        return MapConstraint(sky_map=sky_map, file=row.parameters.get("file", ""))
+    return constraint_from_json(
+        row.parameters, open_map=lambda _name: open_upload(row.upload_sha256)
+    )
+
+
+def tile_shares(tiles: Iterable[Tile], region: Region) -> dict[int, float]:
+    """The region's probability under each tile, by number."""
+    by_size: dict[tuple[float, float], list[Tile]] = {}
+    for tile in tiles:
+        by_size.setdefault((tile.width_deg, tile.height_deg), []).append(tile)
+    shares: dict[int, float] = {}
+    for (width_deg, height_deg), grid in by_size.items():
+        found = tile_probabilities(
+            region,
+            np.array([tile.ra_deg for tile in grid]),
+            np.array([tile.dec_deg for tile in grid]),
+            width_deg=width_deg,
+            height_deg=height_deg,
+        )
+        shares |= {tile.number: float(p) for tile, p in zip(grid, found, strict=True)}
+    return shares
+
+
 # --- ledger ---------------------------------------------------------------------------------
 
 
-def empty_ledger(campaign: Campaign, region: RegionRevision) -> Ledger:
-    """The ledger before any frame."""
+def source_of(campaign: Campaign) -> SourceModel:
+    """The source model as the coordinator stated it, not placed yet."""
+    return source_from_json(campaign.source_model)
+
+
+def prior_of(campaign: Campaign) -> GalacticPrior | None:
+    """The prior of the campaign's region; None: flat."""
+    if campaign.source_model.get("prior") != "galactic":
+        return None
+    return galactic_prior_of(source_of(campaign).parameters)
+
+
+def place_source_of(campaign: Campaign, region: RegionRevision) -> PlacedSource:
+    """Offsets of each pixel for a source model of absolute magnitudes."""
+    model = source_of(campaign)
+    ras_deg, decs_deg = pixel_centres(region.order, pixels_of(region))
+    return place_source(
+        model,
+        galactic_prior_of(model.parameters),
+        ras_deg=ras_deg,
+        decs_deg=decs_deg,
+        probabilities=probabilities_of(region),
+        spread_mag=model.parameters["spread_mag"],
+    )
+
+
+def empty_ledger(
+    campaign: Campaign, region: RegionRevision, *, placed: PlacedSource | None
+) -> Ledger:
+    """The ledger before any frame; `placed` for a model that differs from pixel to pixel."""
     ras_deg, decs_deg = pixel_centres(region.order, pixels_of(region))
     return Ledger(
         probabilities_of(region),
         region.outside,
         undetectable=undetectable_fraction(ras_deg, decs_deg),
-        source_model=source_from_json(campaign.source_model),
+        source_model=placed.model if placed else source_of(campaign),
+        offset_weights=placed.offset_weights if placed else None,
     )
 
 
@@ -150,7 +218,8 @@ def planner_tiles_of(tiles: Sequence[Tile], region: RegionRevision) -> PlannerTi
         decs_deg=[tile.dec_deg for tile in tiles],
         widths_deg=[tile.width_deg for tile in tiles],
         heights_deg=[tile.height_deg for tile in tiles],
-        seats=[tile.seats for tile in tiles],
+        # What dropped out of the region is held until its lease ends, and offered to nobody.
+        seats=[0 if tile.is_dropped else tile.seats for tile in tiles],
     )
 
 

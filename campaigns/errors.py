@@ -39,6 +39,27 @@ class ClaimEnded(Conflict):
     title = "The claim has ended"
 
 
+class TileDropped(Conflict):
+    """A revision of the region left nothing in the tile."""
+
+    code = "tile-dropped"
+    title = "The tile dropped out of the region"
+
+
+class RegionMoved(Conflict):
+    """Somebody else revised the region first, again and again."""
+
+    code = "region-moved"
+    title = "The region was revised meanwhile"
+
+
+class MessagesApart(Conflict):
+    """Messages more than 10 s apart are combined only on a coordinator's word."""
+
+    code = "messages-apart"
+    title = "The messages are far apart in time"
+
+
 class UnsafeSun(CampaignError):
     """Solar safety: never softened, for nobody."""
 
@@ -87,10 +108,13 @@ __all__ = [
     "Conflict",
     "InvalidInput",
     "KeyUsedOtherwise",
+    "MessagesApart",
     "NotAllowed",
     "NotFound",
     "NotSignedIn",
+    "RegionMoved",
     "TestAlertRefused",
+    "TileDropped",
     "TileNotUp",
     "TileTaken",
     "UnsafeSun",

@@ -13,10 +13,12 @@ from typing import Any
 
 import numpy as np
 import numpy.typing as npt
+from django.db.models import Q, QuerySet
 
 import campaigns.bridge as bridge
 from campaigns.events.iso_time import iso_time
-from campaigns.models import Campaign, Event, Frame, RegionRevision, Tile
+from campaigns.ingest.placed_source import placed_source
+from campaigns.models import Campaign, Claim, Event, Frame, RegionRevision, Tile
 from campaigns.selectors.one_moment import one_moment
 from skytiles.ledger.ledger import Ledger
 from skytiles.planner.tiles_to_plan import PlannerTiles
@@ -49,6 +51,8 @@ class Moment:
 class Coverage:
     """What a replica answers. `detected` is D per pixel of the region, in its order."""
 
+    # Of the region whose pixels these are.
+    revision: int
     through_seq: int
     imaged: float
     searched: float
@@ -116,8 +120,11 @@ class LedgerReplica:
         return self.ledger.add(counted, indices, fractions)
 
     def planner_tiles(self) -> PlannerTiles:
-        """All tiles with the pixels under each; kept until one more grid is laid."""
-        rows = Tile.objects.filter(campaign_id=self.campaign_id)
+        """The tiles that can be planned, and those that are held, with the pixels under each.
+
+        Kept until one more grid is laid, or a tile that dropped out is held no more.
+        """
+        rows = list_tiles_to_plan(self.campaign_id)
         if self._tiles is None or self._tiles.n_tiles != rows.count():
             self._tiles = bridge.planner_tiles_of(list(rows), self.region)
         return self._tiles
@@ -125,6 +132,7 @@ class LedgerReplica:
     def coverage(self) -> Coverage:
         """A copy of the present numbers."""
         return Coverage(
+            revision=self.region.revision,
             through_seq=self.through_seq,
             imaged=float(self.ledger.imaged),
             searched=float(self.ledger.searched),
@@ -175,6 +183,13 @@ class ReplicaShelf:
 _shelf = ReplicaShelf()
 
 
+def list_tiles_to_plan(campaign_id: str) -> QuerySet[Tile]:
+    """Tiles of the region, and dropped ones that somebody still holds."""
+    held = Claim.objects.filter(campaign_id=campaign_id, state=Claim.State.HELD)
+    is_wanted = Q(is_dropped=False) | Q(pk__in=held.values("tile_id"))
+    return Tile.objects.filter(is_wanted, campaign_id=campaign_id)
+
+
 def get_coverage(campaign_id: str) -> Coverage:
     """The two numbers and D per pixel, through the newest event."""
     with _shelf.lock_of(campaign_id):
@@ -212,7 +227,7 @@ def _empty_replica(campaign: Campaign) -> LedgerReplica:
         campaign_id=campaign.pk,
         base_seq=campaign.ledger_base_seq,
         region=region,
-        ledger=bridge.empty_ledger(campaign, region),
+        ledger=bridge.empty_ledger(campaign, region, placed=placed_source(campaign, region)),
     )
 
 

@@ -73,7 +73,7 @@ def problem_of(error: Exception) -> Problem | None:
             code=error.code,
             status=400,
             title="The input cannot be used",
-            detail=str(error),
+            detail=error.detail,
             advice=error.advice,
             extra={"given": error.given, "allowed": error.allowed},
         )

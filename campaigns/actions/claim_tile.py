@@ -6,11 +6,11 @@ from datetime import datetime
 from django.db import IntegrityError, transaction
 
 from campaigns.actions.answer_once import Answer, Once, answer_once
-from campaigns.actions.join_campaign import join_campaign
+from campaigns.actions.join_campaign import is_member, join_campaign
 from campaigns.actions.lapse_claims import end_overdue
 from campaigns.actions.live_guard import refuse_unless_live
 from campaigns.actions.sun_guard import refuse_below_horizon, refuse_unsafe_sun
-from campaigns.errors import Conflict, NotFound, TileTaken, refuse_problems
+from campaigns.errors import Conflict, NotFound, TileDropped, TileTaken, refuse_problems
 from campaigns.events.append import append_events
 from campaigns.events.kinds import ClaimHeld, Happening
 from campaigns.events.said import About
@@ -46,6 +46,8 @@ class Wish:
     starts_at: datetime
     until: datetime
     now: datetime
+    # Becomes a member with the claim, in its transaction: a refusal makes nobody one.
+    is_newcomer: bool = False
 
 
 class InstrumentBusy(Conflict):
@@ -93,14 +95,19 @@ def _judge(asked: Asked) -> Wish:
     coming_from = before.tile if before else None
     refuse_unsafe_sun(instrument, tile, starts_at=start, ends_at=until, coming_from=coming_from)
     refuse_below_horizon(instrument, tile, starts_at=start, ends_at=start + series)
-    join_campaign(campaign, asked.person, wall_now=asked.wall_now)
-    return Wish(campaign, tile, asked.person, instrument, start, until, now)
+    is_newcomer = not is_member(campaign, asked.person)
+    return Wish(campaign, tile, asked.person, instrument, start, until, now, is_newcomer)
 
 
 def _tile(campaign: Campaign, number: int) -> Tile:
     tile = Tile.objects.filter(campaign=campaign, number=number).first()
     if tile is None:
         raise NotFound(f"There is no tile {number} here.", "See the tiles on the Board.")
+    if tile.is_dropped:
+        raise TileDropped(
+            f"A revision of the region left nothing in tile {number}.",
+            "Take the best tile now instead.",
+        )
     return tile
 
 
@@ -140,6 +147,8 @@ def _hold(wish: Wish) -> Answer:
             "Take the alternative, or wait until it is given back or lapses.",
         )
     Offer.objects.filter(person=wish.person, tile=wish.tile).delete()
+    if wish.is_newcomer:
+        join_campaign(wish.campaign, wish.person, wall_now=wish.now)
     held = ClaimHeld(id=claim.pk, claim=claim_shown(claim))
     happenings = [*lapsed, (held, About(observer=wish.person.name))]
     append_events(wish.campaign.pk, happenings, at=wish.now, only_while_live=True)

@@ -19,7 +19,7 @@ from campaigns.events.said import About
 from campaigns.ingest.frame_report import ADVICE, shaped_footprint
 from campaigns.models import Frame
 from campaigns.rules.clock import campaign_now
-from campaigns.rules.frame import frame_problems, shape_problems
+from campaigns.rules.frame import frame_problems, typed_problems
 from campaigns.selectors.shown import frame_shown
 from observers.actions.write_transaction import write_transaction
 from observers.models import Person
@@ -42,11 +42,11 @@ def correct_frame(
     refuse_unless_live(frame.campaign)
     refuse_withdrawn(frame)
     now = campaign_now(frame.campaign, wall_now)
-    refuse_problems(shape_problems(changes), advice=ADVICE)
+    refuse_problems(typed_problems(changes), advice=ADVICE)
     _set(frame, changes)
     problems = frame_problems(frame, event_time=frame.campaign.event_time, now=now)
     refuse_problems(problems, advice=ADVICE)
-    refuse_field_below_horizon(frame, frame.instrument)
+    refuse_field_below_horizon(frame, frame.instrument, now=now)
     with write_transaction():
         _save(frame)
         happening = FrameCorrected(number=frame.number, frame=frame_shown(frame))

@@ -5,6 +5,7 @@ from datetime import datetime, timedelta
 import campaigns.bridge as bridge
 from campaigns.errors import InvalidInput
 from campaigns.models import Frame
+from campaigns.rules.frame import time_problems
 from observers.bridge import place_of
 from observers.models import Instrument
 from observers.rules.problem import Problem
@@ -23,19 +24,32 @@ class FieldWasDown(InvalidInput):
     title = "The field was below the horizon then"
 
 
-def refuse_field_below_horizon(frame: Frame, instrument: Instrument) -> None:
+def refuse_field_below_horizon(frame: Frame, instrument: Instrument, *, now: datetime) -> None:
     """Refuse, and name the whole-hour shifts of the clock that would fit."""
-    now_deg, *shifted_deg = _altitudes_deg(frame, instrument, hours=[0, *_HOURS])
-    if now_deg + frame.field_deg / 2.0 >= _LOWEST_DEG:
+    possible = _possible_shifts_h(frame, now=now)
+    stated_deg, *shifted_deg = _altitudes_deg(frame, instrument, hours=[0, *possible])
+    if stated_deg + frame.field_deg / 2.0 >= _LOWEST_DEG:
         return
-    fitting = [hours for hours, high in zip(_HOURS, shifted_deg, strict=True) if high >= 15.0]
-    detail = f"At the stated mid-time the field was {-now_deg:.0f} degrees below the horizon."
+    fitting = [hours for hours, high in zip(possible, shifted_deg, strict=True) if high >= 15.0]
+    detail = f"At the stated mid-time the field was {-stated_deg:.0f} degrees below the horizon."
     raise FieldWasDown(
         detail,
         "Give the mid-time in UTC; is it local time?",
         problems=[Problem("mid_time", detail)],
         extras={"fitting_shifts_h": fitting},
     )
+
+
+def _possible_shifts_h(frame: Frame, *, now: datetime) -> list[int]:
+    """The shifts whose mid-time would be taken: neither in the future nor long before the event."""
+    event_time = frame.campaign.event_time
+    return [
+        hours
+        for hours in _HOURS
+        if not time_problems(
+            frame.mid_time + timedelta(hours=hours), event_time=event_time, now=now
+        )
+    ]
 
 
 def _altitudes_deg(frame: Frame, instrument: Instrument, *, hours: list[int]) -> list[float]:

@@ -12,6 +12,11 @@ from observers.models import Person
 from observers.selectors.gear import list_instruments_in_use
 
 
+def is_member(campaign: Campaign, person: Person) -> bool:
+    """Whether the person takes part already."""
+    return Membership.objects.filter(campaign=campaign, person=person).exists()
+
+
 def join_campaign(campaign: Campaign, person: Person, *, wall_now: datetime) -> Membership:
     """Make the person a member if they are none; says nothing when they are one already."""
     member = Membership.objects.filter(campaign=campaign, person=person).first()

@@ -10,6 +10,8 @@ from typing import Any
 import campaigns.bridge as bridge
 from campaigns.actions.answer_once import Answer, Once, answer_once
 from campaigns.actions.lay_grids import grids_rows, sizes_of
+from campaigns.actions.source_to_launch import source_to_launch
+from campaigns.actions.working_region import working_region
 from campaigns.errors import TestAlertRefused, refuse_problems
 from campaigns.events.append import append_events
 from campaigns.events.iso_time import iso_time
@@ -21,7 +23,8 @@ from campaigns.events.kinds import (
     TilesLaid,
 )
 from campaigns.events.said import About
-from campaigns.ingest.alert_file import KeptAlert
+from campaigns.ingest.alert_file import KeptAlert, refuse_message
+from campaigns.ingest.kept_constraint import constraint_rows
 from campaigns.models import (
     Campaign,
     CampaignStatus,
@@ -31,12 +34,11 @@ from campaigns.models import (
     Tile,
 )
 from campaigns.rules.campaign import launch_problems, role_problems
+from campaigns.rules.combination import apart_notes
 from campaigns.selectors.shown import observer_shown, region_shown, tile_shown
 from observers.models import Instrument, Person
 from observers.selectors.gear import list_network
-from skytiles.region.make_region import make_region
 from skytiles.region.region import Region
-from skytiles.source.source_json import source_from_json, source_to_json
 
 _ID_LETTERS = "23456789abcdefghjkmnpqrstuvwxyz"
 Network = Mapping[Person, Sequence[Instrument]]
@@ -48,6 +50,8 @@ class LaunchWish:
 
     title: str
     source: str | Mapping[str, Any] = "steady"
+    # "flat" or "galactic"; empty: what suits the source model.
+    prior: str = ""
     is_draft: bool = False
     is_public: bool = False
     is_rehearsal: bool = False
@@ -76,11 +80,13 @@ def launch_campaign(
     once: Once | None = None,
 ) -> Answer:
     """Make a campaign; live at once unless it is to stay a draft. Nothing is half written."""
-    return answer_once(
-        once,
-        judge=lambda: prepare_launch(actor, kept, wish=wish, wall_now=wall_now, rng=rng),
-        write=_write,
-    )
+
+    def judge() -> Launch:
+        launch = prepare_launch(actor, kept, wish=wish, wall_now=wall_now, rng=rng)
+        kept.keep_files()
+        return launch
+
+    return answer_once(once, judge=judge, write=_write)
 
 
 def prepare_launch(
@@ -91,32 +97,24 @@ def prepare_launch(
     now = wish.clock_now or wall_now
     network = list_network()
     instruments = [one for owned in network.values() for one in owned]
-    region = region_of_alert(kept, instruments)
     campaign = _campaign_row(actor, kept, wish=wish, now=now, rng=rng)
+    galaxy = bridge.prior_of(campaign)
+    region = working_region(kept.alert.constraints, instruments, galaxy=galaxy)
+    constraints = constraint_rows(campaign, kept, first_position=0, added_at=now)
     return Launch(
         campaign=campaign,
-        constraints=_constraint_rows(campaign, kept),
-        region=bridge.region_row(region, campaign=campaign, made_at=now),
+        constraints=constraints,
+        region=_region_row(actor, region, constraints, now=now),
         tiles=grids_rows(campaign, region, sizes=sizes_of(instruments)),
         network=network,
         now=now,
     )
 
 
-def region_of_alert(kept: KeptAlert, instruments: Sequence[Instrument]) -> Region:
-    """The working region: fine enough for the smallest frame of the network."""
-    sides_deg = [min(one.width_deg, one.height_deg) for one in instruments]
-    return make_region(
-        kept.alert.constraints, smallest_side_deg=min(sides_deg) if sides_deg else None
-    )
-
-
 def _refuse(kept: KeptAlert, wish: LaunchWish) -> None:
-    if role_problems(kept.alert.role, is_rehearsal=wish.is_rehearsal):
-        raise TestAlertRefused(
-            "This alert is marked as a test.",
-            "A test can only become a rehearsal: launch it as one.",
-        )
+    refuse_message(kept)
+    for problem in role_problems(kept.alert.role, is_rehearsal=wish.is_rehearsal):
+        raise TestAlertRefused(problem.detail, "It can only become a rehearsal: launch it as one.")
     problems = launch_problems(
         wish.title, clock_is_set=wish.clock_now is not None, is_rehearsal=wish.is_rehearsal
     )
@@ -126,6 +124,7 @@ def _refuse(kept: KeptAlert, wish: LaunchWish) -> None:
 def _campaign_row(
     actor: Person, kept: KeptAlert, *, wish: LaunchWish, now: datetime, rng: random.Random
 ) -> Campaign:
+    constraints = kept.alert.constraints
     return Campaign(
         id=new_campaign_id(wish.title, rng),
         title=wish.title.strip(),
@@ -135,7 +134,7 @@ def _campaign_row(
         alert_id=kept.alert.identifier[:120],
         kind=kept.alert.kind[:80],
         event_time=kept.event_time,
-        source_model=source_to_json(source_from_json(wish.source)),
+        source_model=source_to_launch(wish.source, prior=wish.prior, constraints=constraints),
         clock_now=wish.clock_now,
         made_by=actor,
         made_at=now,
@@ -149,21 +148,22 @@ def new_campaign_id(title: str, rng: random.Random) -> str:
     return f"{words or 'campaign'}-{''.join(rng.choices(_ID_LETTERS, k=4))}"
 
 
-def _constraint_rows(campaign: Campaign, kept: KeptAlert) -> list[Constraint]:
-    return [
-        Constraint(
-            campaign=campaign,
-            position=position,
-            kind=constraint.kind,
-            parameters=constraint.to_json(),
-            upload_sha256=kept.upload_of(constraint),
-        )
-        for position, constraint in enumerate(kept.alert.constraints)
-    ]
+def _region_row(
+    actor: Person, region: Region, constraints: Sequence[Constraint], *, now: datetime
+) -> RegionRevision:
+    """The first revision, with a warning for messages that are far from the event."""
+    campaign = constraints[0].campaign
+    row = bridge.region_row(region, campaign=campaign, made_at=now)
+    row.made_by = actor
+    row.constraints_on = [one.position for one in constraints]
+    row.notes += apart_notes(constraints, event_time=campaign.event_time)
+    return row
 
 
 def _write(launch: Launch) -> Answer:
     campaign = launch.campaign
+    if campaign.made_by.pk is None:
+        campaign.made_by.save()
     campaign.save(force_insert=True)
     Constraint.objects.bulk_create(launch.constraints)
     launch.region.save(force_insert=True)
@@ -192,7 +192,7 @@ def _happenings(launch: Launch) -> list[tuple[Happening, About]]:
         )
         for person, instruments in launch.network.items()
     ]
-    happenings.append(RegionRevised(region=region_shown(launch.region)))
+    happenings.append(RegionRevised(region=region_shown(launch.region), tiles={}))
     if launch.tiles:
         tiles = {str(tile.number): tile_shown(tile) for tile in launch.tiles}
         happenings.append(TilesLaid(tiles=tiles))

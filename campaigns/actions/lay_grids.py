@@ -74,19 +74,39 @@ def show_instrument(instrument: Instrument, *, wall_now: datetime) -> None:
 def lay_grid(campaign: Campaign, instrument: Instrument, *, wall_now: datetime) -> int:
     """Lay the instrument's grid unless it is there already; returns the number of new tiles."""
     size = tile_size_of(instrument)
-    if not instrument.is_in_use or _has_grid(campaign, size):
+    if not instrument.is_in_use:
         return 0
-    row = RegionRevision.objects.filter(campaign=campaign).latest("revision")
+    while not _has_grid(campaign, size):
+        try:
+            return _lay(campaign, size, wall_now=wall_now)
+        except _RegionRevised:
+            continue
+    return 0
+
+
+class _RegionRevised(Exception):
+    """The region was revised while the grid was computed."""
+
+
+def _lay(campaign: Campaign, size: Size, *, wall_now: datetime) -> int:
+    row = _newest_region(campaign)
     # Computed before the transaction, which stays tiny.
     tiles = grid_rows(campaign, bridge.region_of(row), size=size, first_number=1)
     with write_transaction():
         if not tiles or _has_grid(campaign, size):
             return 0
-        _number_from(tiles, _newest_number(campaign) + 1)
+        number_from(tiles, _newest_number(campaign) + 1)
         Tile.objects.bulk_create(tiles, batch_size=200)
         laid = TilesLaid(tiles={str(tile.number): tile_shown(tile) for tile in tiles})
         append_event(campaign.pk, laid, at=campaign_now(campaign, wall_now))
+        # Asked last: the event holds the campaign's row, so no revision comes after this.
+        if _newest_region(campaign).revision != row.revision:
+            raise _RegionRevised
     return len(tiles)
+
+
+def _newest_region(campaign: Campaign) -> RegionRevision:
+    return RegionRevision.objects.filter(campaign=campaign).latest("revision")
 
 
 def _has_grid(campaign: Campaign, size: Size) -> bool:
@@ -99,6 +119,7 @@ def _newest_number(campaign: Campaign) -> int:
     return int(rows.aggregate(newest=Max("number"))["newest"] or 0)
 
 
-def _number_from(tiles: list[Tile], first: int) -> None:
+def number_from(tiles: list[Tile], first: int) -> None:
+    """Give tiles their numbers, one after the other."""
     for number, tile in enumerate(tiles, start=first):
         tile.number = number

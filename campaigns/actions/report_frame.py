@@ -22,6 +22,7 @@ from campaigns.events.said import About
 from campaigns.ingest.frame_report import ADVICE, FrameReport
 from campaigns.models import Campaign, Claim, Event, Frame
 from campaigns.rules.clock import campaign_now
+from campaigns.rules.first_light import is_before_light
 from campaigns.rules.frame import frame_problems
 from campaigns.selectors.claim_of_frame import find_claim
 from campaigns.selectors.shown import frame_shown
@@ -61,12 +62,11 @@ def report_frame(
         frame = frame_row(actor, campaign, instrument, report=report, depth=depth, now=now)
         problems = frame_problems(frame, event_time=campaign.event_time, now=now)
         refuse_problems(problems, advice=ADVICE)
-        refuse_field_below_horizon(frame, instrument)
+        refuse_field_below_horizon(frame, instrument, now=now)
         frame.claim = claim or find_claim(campaign, instrument, footprint=report.footprint)
-        join_campaign(campaign, actor, wall_now=wall_now)
         return frame
 
-    return answer_once(once, judge=judge, write=_count)
+    return answer_once(once, judge=judge, write=lambda frame: _count(frame, wall_now=wall_now))
 
 
 def frame_row(
@@ -121,11 +121,21 @@ def _rounded(value: Any) -> Any:
     return [_rounded(item) for item in value] if isinstance(value, list) else value
 
 
-def _count(frame: Frame) -> Answer:
+def _count(frame: Frame, *, wall_now: datetime) -> Answer:
     _take_turn(frame.campaign_id)
     if not _insert(frame):
         return _counted_before(frame)
-    about = About(observer=frame.person.name, tile=frame.claim.tile.number if frame.claim else None)
+    # A frame that is refused makes nobody a member.
+    join_campaign(frame.campaign, frame.person, wall_now=wall_now)
+    about = About(
+        observer=frame.person.name,
+        tile=frame.claim.tile.number if frame.claim else None,
+        is_before_light=is_before_light(
+            frame.mid_time,
+            source_model=frame.campaign.source_model,
+            event_time=frame.campaign.event_time,
+        ),
+    )
     counted = FrameCounted(number=frame.number, frame=frame_shown(frame))
     happenings: list[tuple[Happening, About]] = [(counted, about)]
     if frame.claim is not None and _meet(frame.claim, now=frame.reported_at):

@@ -5,8 +5,8 @@ from datetime import datetime
 import campaigns.bridge as bridge
 from campaigns.errors import TileNotUp, UnsafeSun
 from campaigns.models import Tile
-from campaigns.rules.sky import horizon_problems, solar_problems
-from observers.bridge import place_of, solar_rating_of
+from campaigns.rules.sky import reach_problems, solar_problems
+from observers.bridge import mount_of, place_of, solar_rating_of
 from observers.models import Instrument
 from observers.rules.problem import Problem
 
@@ -41,11 +41,12 @@ def refuse_unsafe_sun(
 def refuse_below_horizon(
     instrument: Instrument, tile: Tile, *, starts_at: datetime, ends_at: datetime
 ) -> None:
-    """The tile must be above the site's lowest altitude during its series."""
-    found = horizon_problems(
+    """The tile must stay above the site's skyline and within the mount's reach in its series."""
+    found = reach_problems(
         place_of(instrument.site),
-        ra_deg=tile.ra_deg,
-        dec_deg=tile.dec_deg,
+        mount_of(instrument),
+        tile.ra_deg,
+        tile.dec_deg,
         start_mjd=bridge.mjd_of(starts_at),
         end_mjd=bridge.mjd_of(ends_at),
     )

@@ -218,7 +218,7 @@ def _etag(seq: int) -> str:
 
 def _kept_alert(values: dict[str, Any], *, now: datetime) -> KeptAlert:
     if values.get("upload"):
-        return alert_of_upload(values["upload"], now=now)
+        return alert_of_upload(values["upload"], now=now, filename=values["filename"])
     if isinstance(values.get("alert"), dict):
         return alert_of_message(values["alert"], now=now)
     raise InvalidInput(
@@ -232,6 +232,7 @@ def _wish(values: dict[str, Any]) -> LaunchWish:
     return LaunchWish(
         title=values["title"],
         source=values.get("source") or "steady",
+        prior=values["prior"],
         is_draft=values["draft"],
         is_public=values["is_public"],
         is_rehearsal=values["is_rehearsal"],

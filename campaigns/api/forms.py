@@ -30,6 +30,11 @@ class SiteForm(StrictForm):
     sky_brightness_mag = serializers.FloatField(required=False)
     seeing_arcsec = serializers.FloatField(required=False)
     min_altitude_deg = serializers.FloatField(required=False)
+    horizon_mask = serializers.ListField(
+        child=serializers.ListField(child=serializers.FloatField(), min_length=2, max_length=2),
+        required=False,
+        help_text="the skyline as [azimuth_deg, altitude_deg] points; as private as the place",
+    )
     clear_chance = serializers.FloatField(required=False)
 
 
@@ -55,12 +60,26 @@ class InstrumentForm(StrictForm):
     obstruction = serializers.FloatField(required=False)
     throughput = serializers.FloatField(required=False)
     read_noise_e = serializers.FloatField(required=False)
+    dark_e_per_s = serializers.FloatField(required=False)
+    full_well_e = serializers.FloatField(required=False)
+    magnification = serializers.FloatField(required=False, allow_null=True)
     band = serializers.CharField(required=False)
     exposure_s = serializers.FloatField(required=False)
     n_exposures = serializers.IntegerField(required=False)
     overhead_s = serializers.FloatField(required=False)
     slew_deg_per_s = serializers.FloatField(required=False)
     tiles_per_night = serializers.IntegerField(required=False)
+    mount_min_altitude_deg = serializers.FloatField(required=False, allow_null=True)
+    mount_max_altitude_deg = serializers.FloatField(required=False, allow_null=True)
+    min_hour_angle_h = serializers.FloatField(
+        required=False, allow_null=True, help_text="0 on the meridian, negative before it"
+    )
+    max_hour_angle_h = serializers.FloatField(required=False, allow_null=True)
+    min_dec_deg = serializers.FloatField(required=False, allow_null=True)
+    max_dec_deg = serializers.FloatField(required=False, allow_null=True)
+    crosses_meridian = serializers.BooleanField(
+        required=False, help_text="false: a series lies wholly before or after the meridian"
+    )
     is_daytime_rated = serializers.BooleanField(required=False)
     is_eye_free = serializers.BooleanField(required=False)
     sun_avoidance_deg = serializers.FloatField(required=False)
@@ -77,9 +96,25 @@ class LaunchForm(StrictForm):
     """A campaign to launch: an uploaded file or an alert, and what the coordinator chose."""
 
     upload = serializers.CharField(required=False, help_text="SHA-256 given by POST region")
+    filename = serializers.CharField(
+        required=False,
+        default="",
+        allow_blank=True,
+        max_length=100,
+        help_text="what the uploaded file was called",
+    )
     alert = serializers.JSONField(required=False, help_text="an alert in our JSON")
     title = serializers.CharField(max_length=120)
-    source = serializers.JSONField(required=False, help_text='"steady", or a model as JSON')
+    source = serializers.JSONField(
+        required=False, help_text="name of a source model, or a model as JSON (GET source-models)"
+    )
+    prior = serializers.CharField(
+        required=False,
+        default="",
+        allow_blank=True,
+        max_length=20,
+        help_text="flat or galactic; without it what suits the source model",
+    )
     draft = serializers.BooleanField(required=False, default=False)
     is_public = serializers.BooleanField(required=False, default=False)
     is_rehearsal = serializers.BooleanField(required=False, default=False)
@@ -98,7 +133,13 @@ class DepthForm(StrictForm):
     """How deep a frame is, and who has looked at it how."""
 
     limit_mag = serializers.FloatField(required=False, allow_null=True)
-    limit_kind = serializers.ChoiceField(LIMIT_KINDS, required=False)
+    limit_kind = serializers.ChoiceField(
+        LIMIT_KINDS, required=False, help_text='"estimate" without limit_mag: we estimate it'
+    )
+    star_mag = serializers.FloatField(
+        required=False, allow_null=True, help_text="of one star, with star_snr: makes the limit"
+    )
+    star_snr = serializers.FloatField(required=False, allow_null=True)
     reference_mag = serializers.FloatField(required=False, allow_null=True)
     is_examined = serializers.BooleanField(required=False)
     examined_way = serializers.ChoiceField(WAYS, required=False, allow_blank=True)
@@ -127,6 +168,12 @@ class FrameForm(PlaceForm):
     claim = serializers.IntegerField(required=False, allow_null=True)
     header = serializers.DictField(
         required=False, allow_null=True, help_text="allow-listed FITS cards, others are dropped"
+    )
+    pictures = serializers.ListField(
+        child=serializers.DictField(),
+        required=False,
+        max_length=128,
+        help_text="of a mosaic: the cards of each picture; together they are one frame",
     )
 
 

@@ -1,5 +1,6 @@
 """Observing: tonight, best tile, claims, frames."""
 
+from collections.abc import Sequence
 from typing import Any, TypedDict
 
 from django.utils import timezone
@@ -22,9 +23,12 @@ from campaigns.api.queries import int_of
 from campaigns.api.schema import answer_schema
 from campaigns.events.state import FrameShown
 from campaigns.ingest.frame_report import read_report
+from campaigns.ingest.told_depth import with_star_limit
 from campaigns.ledger_replica import get_coverage
+from campaigns.rules.first_light import light_notes
 from campaigns.selectors.access import access_campaign_to_observe, access_claim, access_frame
 from campaigns.selectors.best_tile import BestTile, get_best_tile
+from campaigns.selectors.depth_estimate import with_estimate
 from campaigns.selectors.tonight import MyClaim, Tonight, get_tonight
 from observers.selectors.access import access_own_instrument
 
@@ -39,6 +43,8 @@ class FrameAnswer(TypedDict):
     imaged: float
     searched: float
     searched_before: float
+    # What was taken for granted about the header, in plain sentences.
+    notes: list[str]
 
 
 class BestTileView(APIView):
@@ -127,14 +133,22 @@ class FramesView(APIView):
     def post(self, request: Request, campaign_id: str) -> Response:
         """Count a frame, by its header or typed; the same frame twice is one (200)."""
         campaign = access_campaign_to_observe(request.user, campaign_id)
-        values, wall_now = parsed(FrameForm, request.data), timezone.now()
+        values, wall_now = with_star_limit(parsed(FrameForm, request.data)), timezone.now()
         instrument = access_own_instrument(request.user, values["instrument"])
         claim_id = values.get("claim")
+        report = read_report(values, instrument)
+        values, estimated = with_estimate(
+            values,
+            instrument,
+            footprint=report.footprint,
+            mid_time=report.mid_time,
+            duration_s=report.duration_s,
+        )
         answer = report_frame(
             request.user,
             campaign,
             instrument=instrument,
-            report=read_report(values, instrument),
+            report=report,
             depth=_depth(values),
             claim=access_claim(request.user, campaign_id, claim_id) if claim_id else None,
             wall_now=wall_now,
@@ -142,7 +156,10 @@ class FramesView(APIView):
                 request, request.user, operation=f"frames {campaign.pk}", wall_now=wall_now
             ),
         )
-        return _with_numbers(answer, campaign.pk)
+        early = light_notes(
+            report.mid_time, source_model=campaign.source_model, event_time=campaign.event_time
+        )
+        return _with_numbers(answer, campaign.pk, notes=[*report.notes, *estimated, *early])
 
 
 class ExamineView(APIView):
@@ -182,7 +199,7 @@ class CorrectView(APIView):
     def post(self, request: Request, campaign_id: str, number: int) -> Response:
         """Change the given values."""
         frame = access_frame(request.user, campaign_id, number)
-        changes = parsed(PlaceForm, request.data, partial=True)
+        changes = with_star_limit(parsed(PlaceForm, request.data, partial=True))
         answer = correct_frame(request.user, frame, changes=changes, wall_now=timezone.now())
         return _with_numbers(answer, campaign_id)
 
@@ -192,9 +209,10 @@ def _depth(values: dict[str, Any]) -> Depth:
     return Depth(**{name: values[name] for name in names if name in values})
 
 
-def _with_numbers(answer: Answer, campaign_id: str) -> Response:
+def _with_numbers(answer: Answer, campaign_id: str, *, notes: Sequence[str] = ()) -> Response:
     """Beside the kept answer stand the two numbers as they were just after its event."""
     body = dict(answer.body)
     imaged, searched, before = get_coverage(campaign_id).around(body.pop("seq"))
     numbers = {"imaged": imaged, "searched": searched, "searched_before": before}
-    return response_of(Answer(answer.status, {**body, **numbers}, is_repeat=answer.is_repeat))
+    sent = {**body, **numbers, "notes": list(notes)}
+    return response_of(Answer(answer.status, sent, is_repeat=answer.is_repeat))

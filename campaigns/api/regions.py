@@ -6,22 +6,29 @@ from typing import Any, TypedDict
 import numpy as np
 from django.core.files.uploadedfile import UploadedFile
 from django.utils import timezone
-from drf_spectacular.utils import extend_schema
+from drf_spectacular.utils import OpenApiParameter, extend_schema
 from rest_framework.parsers import JSONParser, MultiPartParser
 from rest_framework.request import Request
 from rest_framework.response import Response
 from rest_framework.views import APIView
 
-from campaigns.actions.launch_campaign import region_of_alert
+from campaigns.actions.working_region import working_region
 from campaigns.api.schema import answer_schema
 from campaigns.errors import InvalidInput
 from campaigns.events.iso_time import iso_time
-from campaigns.ingest.alert_file import KeptAlert, alert_of_bytes, alert_of_message
+from campaigns.ingest.alert_file import (
+    KeptAlert,
+    alert_of_bytes,
+    alert_of_message,
+    refuse_message,
+)
 from campaigns.ingest.uploads import joined
 from campaigns.selectors.region_arrays import packed
 from observers.rules.problem import Problem
 from observers.selectors.access import access_account
 from observers.selectors.gear import list_network
+from skytiles.region.galactic_prior import GalacticPrior
+from skytiles.region.make_region import PRIORS
 from skytiles.region.region import Region, describe_region
 from skytiles.sphere.healpix_door import n_pixels
 
@@ -60,6 +67,7 @@ class RegionView(APIView):
             },
             "application/json": {"type": "object", "description": "an alert in our JSON"},
         },
+        parameters=[OpenApiParameter("prior", str, description="flat (default) or galactic")],
         responses={200: answer_schema(RegionAnswer)},
         summary="Describe the region of an alert",
     )
@@ -67,8 +75,11 @@ class RegionView(APIView):
         """Read an alert file or message; only an uploaded file is kept, for the launch."""
         access_account(request.user)
         sha256, kept = _kept_alert(request)
+        refuse_message(kept)
         instruments = [one for owned in list_network().values() for one in owned]
-        region = region_of_alert(kept, instruments)
+        galaxy = GalacticPrior() if _prior_asked(request) == "galactic" else None
+        region = working_region(kept.alert.constraints, instruments, galaxy=galaxy)
+        kept.keep_files()
         answer: RegionAnswer = {
             "upload": sha256,
             "alert": _alert_as_sent(kept),
@@ -79,11 +90,22 @@ class RegionView(APIView):
         return Response(answer)
 
 
+def _prior_asked(request: Request) -> str:
+    prior = request.query_params.get("prior", "flat")
+    if prior in PRIORS:
+        return prior
+    raise InvalidInput(
+        f"There is no prior {prior[:40]!r}.",
+        f"Ask for {' or '.join(PRIORS)}.",
+        problems=[Problem("prior", "Choose one of the two.")],
+    )
+
+
 def _kept_alert(request: Request) -> tuple[str | None, KeptAlert]:
     now = timezone.now()
     file = request.FILES.get("file")
     if isinstance(file, UploadedFile):
-        filename = (file.name or "upload")[:100]
+        filename = (file.name or "The uploaded file")[:100]
         return alert_of_bytes(joined(file.chunks()), filename=filename, now=now)
     if isinstance(request.data, dict) and request.data and not request.FILES:
         return None, alert_of_message(dict(request.data), now=now)
@@ -102,6 +124,9 @@ def _alert_as_sent(kept: KeptAlert) -> dict[str, Any]:
         "kind": alert.kind,
         "role": alert.role,
         "constraints": [constraint.to_json() for constraint in alert.constraints],
+        "citations": [citation.to_json() for citation in alert.citations],
+        "importance": alert.importance,
+        "links": [link.to_json() for link in alert.links],
     }
 
 

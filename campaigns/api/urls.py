@@ -2,13 +2,24 @@
 
 from django.urls import path
 
-from campaigns.api import campaigns, gear, observing, regions, watching
+from campaigns.api import campaigns, depth, gear, observing, regions, revisions, sources, watching
 
 urlpatterns = [
     path("sites", gear.SitesView.as_view(), name="api-sites"),
     path("sites/<int:site_id>", gear.SiteView.as_view(), name="api-site"),
     path("instruments", gear.InstrumentsView.as_view(), name="api-instruments"),
     path("instruments/<int:instrument_id>", gear.InstrumentView.as_view(), name="api-instrument"),
+    path(
+        "instruments/<int:instrument_id>/depth-estimate",
+        depth.DepthEstimateView.as_view(),
+        name="api-depth-estimate",
+    ),
+    path("source-models", sources.SourceModelsView.as_view(), name="api-source-models"),
+    path(
+        "campaigns/<str:campaign_id>/source",
+        sources.CampaignSourceView.as_view(),
+        name="api-campaign-source",
+    ),
     path("region", regions.RegionView.as_view(), name="api-region"),
     path("campaigns", campaigns.CampaignsView.as_view(), name="api-campaigns"),
     path("campaigns/<str:campaign_id>", campaigns.CampaignView.as_view(), name="api-campaign"),
@@ -20,8 +31,13 @@ urlpatterns = [
     path("campaigns/<str:campaign_id>/events", watching.EventsView.as_view(), name="api-events"),
     path(
         "campaigns/<str:campaign_id>/region",
-        watching.RegionArraysView.as_view(),
+        revisions.CampaignRegionView.as_view(),
         name="api-region-arrays",
+    ),
+    path(
+        "campaigns/<str:campaign_id>/region/revisions",
+        revisions.RevisionsView.as_view(),
+        name="api-region-revisions",
     ),
     path(
         "campaigns/<str:campaign_id>/coverage",

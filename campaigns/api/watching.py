@@ -15,7 +15,7 @@ from campaigns.events.iso_time import iso_time
 from campaigns.ledger_replica import get_coverage
 from campaigns.selectors.darkness import LONGEST_HOURS, DarkSite, list_darkness
 from campaigns.selectors.events import list_events_since
-from campaigns.selectors.region_arrays import coverage_as_sent, get_region_arrays
+from campaigns.selectors.region_arrays import coverage_as_sent
 
 
 class EventSent(TypedDict):
@@ -57,6 +57,7 @@ class HistoryPoint(TypedDict):
 class CoverageAnswer(TypedDict):
     """The two numbers, and D of every pixel of the region in 255 steps (uint8, base64)."""
 
+    revision: int
     through_seq: int
     imaged: float
     searched: float
@@ -84,18 +85,6 @@ class EventsView(APIView):
         if events == [] and request.headers.get("If-None-Match") == etag:
             return Response(status=304, headers={"ETag": etag})
         return Response({"seq": seq, "now": iso_time(now), **news}, headers={"ETag": etag})
-
-
-class RegionArraysView(APIView):
-    """The pixels of the region."""
-
-    permission_classes = (AllowAny,)
-
-    @extend_schema(responses={200: answer_schema(RegionArrays)}, summary="Pixels and probabilities")
-    def get(self, request: Request, campaign_id: str) -> Response:
-        """The newest revision."""
-        campaign, _ = campaign_and_now(request, campaign_id)
-        return Response(get_region_arrays(campaign))
 
 
 class CoverageView(APIView):

@@ -40,7 +40,10 @@ def _closed(state: Any, payload: Payload) -> Any:
 
 
 def _region(state: Any, payload: Payload) -> Any:
-    return {**state, "region": payload["region"]}
+    moved = {
+        number: {**state["tiles"][number], **change} for number, change in payload["tiles"].items()
+    }
+    return {**state, "region": payload["region"], "tiles": {**state["tiles"], **moved}}
 
 
 def _tiles(state: Any, payload: Payload) -> Any:

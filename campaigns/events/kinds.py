@@ -12,6 +12,7 @@ from campaigns.events.state import (
     OfferShown,
     PlanShown,
     RegionShown,
+    TileMoved,
     TileShown,
 )
 
@@ -50,10 +51,14 @@ class CampaignClosed(Happening):
 
 @dataclass(frozen=True)
 class RegionRevised(Happening):
-    """A new revision of the region; pixels come by GET campaigns/<id>/region."""
+    """A new revision of the region, and what it makes of the tiles that were there before.
+
+    Pixels come by GET campaigns/<id>/region.
+    """
 
     kind = "region.revised"
     region: RegionShown
+    tiles: dict[str, TileMoved]
 
 
 @dataclass(frozen=True)

@@ -13,6 +13,8 @@ class About:
 
     observer: str = ""
     tile: int | None = None
+    # Of a frame: taken before any light could have arrived.
+    is_before_light: bool = False
 
 
 def said(event: kinds.Happening, about: About) -> str:
@@ -37,8 +39,11 @@ def _closed(event: kinds.CampaignClosed, about: About) -> str:
 
 
 def _region(event: kinds.RegionRevised, about: About) -> str:
-    area = event.region["area_deg2"]["90"]
-    return f"Region, revision {event.region['revision']}: 90 % within {area:,.0f} square degrees."
+    region = event.region
+    if region["change"] is not None:
+        return f"Region, revision {region['revision']}: {region['change']['said']}"
+    area = region["area_deg2"]["90"]
+    return f"Region, revision {region['revision']}: 90 % within {area:,.0f} square degrees."
 
 
 def _tiles(event: kinds.TilesLaid, about: About) -> str:
@@ -92,7 +97,8 @@ def _counted(event: kinds.FrameCounted, about: About) -> str:
     tile = f" of tile {frame['tile']}" if frame["tile"] is not None else ""
     depth = f", limit {frame['limit_mag']:.1f}" if frame["limit_mag"] is not None else ""
     unseen = "" if frame["is_examined"] else ", not yet examined"
-    return f"{about.observer} reported frame {event.number}{tile}{depth}{unseen}."
+    early = " It is from before any light could have arrived." if about.is_before_light else ""
+    return f"{about.observer} reported frame {event.number}{tile}{depth}{unseen}.{early}"
 
 
 def _examined(event: kinds.FrameExamined, about: About) -> str:

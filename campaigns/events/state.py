@@ -8,6 +8,8 @@ class SourceShown(TypedDict):
 
     preset: str
     label: str
+    # The earliest light under the model; null for one that always shone.
+    first_light_at: str | None
 
 
 class CampaignShown(TypedDict):
@@ -32,8 +34,23 @@ class PeakShown(TypedDict):
     dec_deg: float
 
 
+ChangeWay = Literal["added", "replaced", "switched on", "switched off", "retracted"]
+
+
+class ChangeShown(TypedDict):
+    """What a revision changed, as everybody is told."""
+
+    way: ChangeWay
+    said: str
+    area_before_deg2: dict[str, float]
+    n_tiles_new: int
+    # Numbers of tiles that lost the region, and of those that got it back.
+    tiles_dropped: list[int]
+    tiles_back: list[int]
+
+
 class RegionShown(TypedDict):
-    """The region without its pixels."""
+    """The region without its pixels. `overlap` says how well its constraints agree."""
 
     revision: int
     order: int
@@ -42,6 +59,8 @@ class RegionShown(TypedDict):
     area_deg2: dict[str, float]
     peak: PeakShown
     notes: list[str]
+    overlap: float | None
+    change: ChangeShown | None
 
 
 class SiteShown(TypedDict):
@@ -86,6 +105,14 @@ class TileShown(TypedDict):
     height_deg: float
     probability: float
     seats: int
+    is_dropped: bool
+
+
+class TileMoved(TypedDict):
+    """What a revision of the region makes of a tile that was there before."""
+
+    probability: float
+    is_dropped: bool
 
 
 class UnassignedShown(TypedDict):
@@ -149,6 +176,15 @@ class CircleShown(TypedDict):
     diameter_deg: float
 
 
+class MosaicShown(TypedDict):
+    """A footprint of several pictures that were exposed together."""
+
+    shape: Literal["mosaic"]
+    ra_deg: float
+    dec_deg: float
+    parts: list[PolygonShown | CircleShown]
+
+
 class FrameShown(TypedDict):
     """One frame. `m_eff` is empty when it has no limit or nobody has examined it."""
 
@@ -156,7 +192,7 @@ class FrameShown(TypedDict):
     instrument: int
     tile: int | None
     state: Literal["counted", "withdrawn"]
-    footprint: PolygonShown | CircleShown
+    footprint: PolygonShown | CircleShown | MosaicShown
     mid_time: str
     duration_s: float
     band: str

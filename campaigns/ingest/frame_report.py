@@ -8,11 +8,13 @@ from typing import Any
 import campaigns.bridge as bridge
 from campaigns.errors import InvalidInput, refuse_problems
 from campaigns.ingest.header_keywords import Card, allowed_cards
-from campaigns.rules.frame import shape_problems
+from campaigns.ingest.typed_beside_header import set_right
+from campaigns.rules.frame import typed_problems
 from observers.models import Instrument
 from observers.rules.problem import Problem
 from skytiles.tiling.footprint import Footprint, circle_footprint, rectangle_footprint
-from skytiles.tiling.frame_header import read_frame_header
+from skytiles.tiling.frame_header import ANGLE_UNKNOWN, FrameHeader, read_frame_header
+from skytiles.tiling.mosaic_header import read_mosaic_header
 
 MOST_NOTES = 10
 ADVICE = "Correct the named fields and send the frame again; nothing was stored."
@@ -33,7 +35,7 @@ class FrameReport:
 
 def read_report(values: Mapping[str, Any], instrument: Instrument) -> FrameReport:
     """From the checked values of a request; typed values beside a header set it right."""
-    refuse_problems(shape_problems(values), advice=ADVICE)
+    refuse_problems(typed_problems(values), advice=ADVICE)
     if values.get("header"):
         return _from_header(values, instrument)
     return _from_form(values, instrument)
@@ -65,21 +67,38 @@ def shaped_footprint(
 
 def _from_header(values: Mapping[str, Any], instrument: Instrument) -> FrameReport:
     cards = allowed_cards(values["header"])
-    read = read_frame_header(cards)
-    footprint = read.footprint or shaped_footprint(
-        instrument,
-        ra_deg=read.ra_deg,
-        dec_deg=read.dec_deg,
-        rotation_deg=values.get("rotation_deg"),
-    )
+    told = set_right(cards, values)
+    pictures = [allowed_cards(picture) for picture in values.get("pictures") or ()]
+    read = read_mosaic_header(told, pictures) if pictures else read_frame_header(told)
+    footprint = _header_footprint(read, values, instrument)
+    # The angle may be typed or known from My gear: then the rectangle counts.
+    unsaid = {ANGLE_UNKNOWN} if footprint.shape == "polygon" else set()
     return FrameReport(
         footprint=footprint,
         mid_time=values.get("mid_time") or bridge.time_of(read.mid_mjd),
-        duration_s=values.get("duration_s") or read.duration_s,
+        duration_s=read.duration_s,
         band=values.get("band") or _short_band(read.band) or instrument.band,
         origin="header",
         header=cards,
-        notes=tuple(read.notes)[:MOST_NOTES],
+        notes=tuple(note for note in read.notes if note not in unsaid)[:MOST_NOTES],
+    )
+
+
+def _header_footprint(
+    read: FrameHeader, values: Mapping[str, Any], instrument: Instrument
+) -> Footprint:
+    """The plate solution's outline, else the typed, stated or usual size at the stated place."""
+    is_solved = read.footprint is not None and read.width_deg is None
+    if read.footprint is not None and is_solved:
+        return read.footprint
+    width_deg, height_deg = values.get("width_deg"), values.get("height_deg")
+    return shaped_footprint(
+        instrument,
+        ra_deg=read.ra_deg,
+        dec_deg=read.dec_deg,
+        width_deg=read.width_deg if width_deg is None else width_deg,
+        height_deg=read.height_deg if height_deg is None else height_deg,
+        rotation_deg=values.get("rotation_deg"),
     )
 
 

@@ -11,7 +11,7 @@ from django.conf import settings
 
 from campaigns.errors import InvalidInput, NotFound
 
-# DESIGN: a map of 2 GB is refused before it is read; what comes through HTTP is smaller still.
+# On the command line a map may have 2 GB; what comes through HTTP is held in memory by a server.
 MOST_BYTES = 256 * 1024 * 1024
 _SHA256 = re.compile(r"[0-9a-f]{64}")
 
@@ -41,6 +41,11 @@ def keep_upload(chunks: Iterable[bytes]) -> str:
     finally:
         Path(temporary).unlink(missing_ok=True)
     return digest.hexdigest()
+
+
+def sha256_of(data: bytes) -> str:
+    """Under which name a file is kept."""
+    return hashlib.sha256(data).hexdigest()
 
 
 def joined(chunks: Iterable[bytes]) -> bytes:

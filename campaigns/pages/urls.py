@@ -10,6 +10,7 @@ urlpatterns = [
     path("join/<str:token>/", views.join, name="join"),
     path("launch/", views.launch, name="launch"),
     path("gear/", views.gear, name="gear"),
+    path("methods/", views.methods, name="methods"),
     path("c/<str:campaign_id>/", views.board, name="board"),
     path("c/<str:campaign_id>/tonight/", views.tonight, name="tonight"),
     path("c/<str:campaign_id>/log/", views.log, name="log"),

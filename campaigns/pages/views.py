@@ -17,6 +17,7 @@ from campaigns.selectors.access import (
     access_campaign,
     access_campaign_to_observe,
 )
+from campaigns.selectors.methods import list_methods
 from observers.errors import CampaignError, NotSignedIn
 from observers.selectors.access import access_account, access_coordinator
 from observers.selectors.invitations import access_invitation
@@ -77,6 +78,12 @@ def gear(request: HttpRequest) -> HttpResponse:
     """My sites, instruments and tokens."""
     access_account(request.user)
     return _show(request, "gear")
+
+
+@page
+def methods(request: HttpRequest) -> HttpResponse:
+    """Every formula as implemented, for everybody."""
+    return _show(request, "methods", chapters=list_methods())
 
 
 @page

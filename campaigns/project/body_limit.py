@@ -5,11 +5,12 @@ from typing import Any
 
 import orjson
 
+from campaigns.ingest.uploads import MOST_BYTES
 from campaigns.problem_details import CONTENT_TYPE, Problem
 
-# Sky maps are uploaded here and nowhere else (skytiles refuses 2 GB and more).
+# Sky maps are uploaded here and nowhere else: the file, and the form around it.
 UPLOAD_PATH = "/api/v1/region"
-UPLOAD_LIMIT = 2_000_000_000
+UPLOAD_LIMIT = MOST_BYTES + 1_000_000
 LIMIT = 2_500_000
 
 Receive = Callable[[], Awaitable[dict[str, Any]]]
@@ -53,14 +54,28 @@ def _stated_length(scope: dict[str, Any]) -> int:
     return int(text) if text.isdigit() else 0
 
 
-async def _refuse(send: Send, limit: int) -> None:
-    problem = Problem(
+def _file_problem() -> Problem:
+    return Problem(
+        code="upload-too-large",
+        status=413,
+        title="The file is too large",
+        detail=f"The alert file has more than {MOST_BYTES // 1024**2} MB; it was not read.",
+        advice="Send the multi-order version of the map, which is much smaller.",
+    )
+
+
+def _body_problem(limit: int) -> Problem:
+    return Problem(
         code="body-too-large",
         status=413,
         title="The body is too large",
-        detail=f"More than {limit:,} bytes were sent.",
+        detail=f"More than {limit:,} bytes were sent; they were not read.",
         advice="Send less; a large sky map belongs to POST /api/v1/region as a file.",
     )
+
+
+async def _refuse(send: Send, limit: int) -> None:
+    problem = _file_problem() if limit == UPLOAD_LIMIT else _body_problem(limit)
     body = orjson.dumps(problem.to_json())
     headers = [
         (b"content-type", CONTENT_TYPE.encode()),

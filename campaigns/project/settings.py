@@ -26,6 +26,8 @@ DEBUG: bool = env.bool("QUARTERSKY_DEBUG", default=False)
 DATA = Path(env.str("QUARTERSKY_DATA", default=str(ROOT / ".data"))).resolve()
 DATA.mkdir(parents=True, exist_ok=True)
 UPLOADS = DATA / "uploads"
+# Arrays that can be computed again at any time.
+COMPUTED = DATA / "computed"
 REDIS_URL: str = env.str("REDIS_URL", default="")
 
 SECRET_KEY: str = env.str("QUARTERSKY_SECRET_KEY", default="") or read_or_make_secret_key(

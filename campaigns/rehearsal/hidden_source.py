@@ -110,6 +110,8 @@ def is_inside(footprint: dict, vectors: np.ndarray) -> np.ndarray:
     if footprint["shape"] == "circle":
         centre = direction(footprint["ra_deg"], footprint["dec_deg"])
         return vectors @ centre >= math.cos(math.radians(footprint["diameter_deg"] / 2.0))
+    if footprint["shape"] == "mosaic":
+        return np.any([is_inside(part, vectors) for part in footprint["parts"]], axis=0)
     corners = np.array([direction(ra, dec) for ra, dec in footprint["corners_deg"]])
     edges = np.cross(corners, np.roll(corners, -1, axis=0))
     # Corners may run either way round: all edges must agree with the middle.

@@ -1,6 +1,6 @@
 """What a campaign may say of itself, and what its status allows."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 from observers.rules.problem import Problem
 
@@ -13,9 +13,23 @@ def title_problems(title: str) -> list[Problem]:
 
 
 def role_problems(alert_role: str, *, is_rehearsal: bool) -> list[Problem]:
-    """A message marked as a test can only become a rehearsal."""
-    if alert_role == "test" and not is_rehearsal:
-        return [Problem("is_rehearsal", "The alert is marked as a test.")]
+    """Only what was observed opens a campaign; a test or a prediction can become a rehearsal."""
+    if alert_role != "observation" and not is_rehearsal:
+        return [Problem("is_rehearsal", f"This alert is marked as a {alert_role}.")]
+    return []
+
+
+def message_problems(
+    alert_role: str, *, retracted: Sequence[str], has_direction: bool
+) -> list[Problem]:
+    """What a message must not be to become a campaign of any kind."""
+    if retracted:
+        names = ", ".join(retracted)[:200]
+        return [Problem("upload", f"This message opens nothing: it takes back {names}.")]
+    if alert_role == "utility":
+        return [Problem("upload", "This message is about its sender's system, not about the sky.")]
+    if not has_direction:
+        return [Problem("upload", "This message gives no direction on the sky.")]
     return []
 
 

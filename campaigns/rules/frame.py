@@ -54,21 +54,23 @@ def frame_problems(frame: FrameValues, *, event_time: datetime, now: datetime) -
     """Judge one frame at the time `now` of its campaign."""
     return [
         *number_problems(frame, _RANGES),
-        *_time_problems(frame.mid_time, event_time=event_time, now=now),
+        *time_problems(frame.mid_time, event_time=event_time, now=now),
         *_duration_problems(frame.duration_s),
         *_word_problems(frame),
     ]
 
 
-def shape_problems(values: Mapping[str, Any]) -> list[Problem]:
-    """Judge a typed position, size and rotation before a footprint is made of them."""
+def typed_problems(values: Mapping[str, Any]) -> list[Problem]:
+    """Judge a typed position, size, rotation and duration before a footprint is made of them."""
     typed = {name: values.get(name) for name in _SHAPE_RANGES}
-    return [
+    found = [
         problem
         for name, value in typed.items()
         if value is not None
         for problem in range_problems(name, value, allowed=_SHAPE_RANGES[name])
     ]
+    duration_s = values.get("duration_s")
+    return found if duration_s is None else [*found, *_duration_problems(duration_s)]
 
 
 def examination_problems(*, is_examined: bool, examined_way: str) -> list[Problem]:
@@ -79,18 +81,16 @@ def examination_problems(*, is_examined: bool, examined_way: str) -> list[Proble
     return []
 
 
-def _time_problems(mid_time: datetime, *, event_time: datetime, now: datetime) -> Iterator[Problem]:
+def time_problems(mid_time: datetime, *, event_time: datetime, now: datetime) -> list[Problem]:
+    """Judge when a frame was taken."""
     if mid_time > now + CLOCK_SLACK:
         ahead = _hours_and_minutes(mid_time - now)
-        yield Problem(
-            "mid_time",
-            f"The mid-time lies {ahead} in the future. Is it local time? Give UTC.",
-        )
+        words = f"The mid-time lies {ahead} in the future. Is it local time? Give UTC."
+        return [Problem("mid_time", words)]
     if mid_time < event_time - LONGEST_BEFORE_EVENT:
-        yield Problem(
-            "mid_time",
-            "The frame was taken more than a day before the event. Check its date.",
-        )
+        words = "The frame was taken more than a day before the event. Check its date."
+        return [Problem("mid_time", words)]
+    return []
 
 
 def _duration_problems(duration_s: float) -> Iterator[Problem]:

@@ -24,6 +24,7 @@ def get_region_arrays(campaign: Campaign) -> dict[str, Any]:
 def coverage_as_sent(coverage: Coverage) -> dict[str, Any]:
     """The two numbers, their history, and D per pixel in 255 steps."""
     return {
+        "revision": coverage.revision,
         "through_seq": coverage.through_seq,
         "imaged": coverage.imaged,
         "searched": coverage.searched,

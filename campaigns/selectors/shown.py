@@ -6,6 +6,7 @@ import campaigns.bridge as bridge
 from campaigns.events import state
 from campaigns.events.iso_time import iso_time
 from campaigns.models import Campaign, Claim, Frame, Offer, Plan, RegionRevision, Tile
+from campaigns.rules.first_light import first_light_at
 from observers.bridge import tile_size_of
 from observers.models import Instrument, Site
 from observers.rules.site import public_place_deg
@@ -14,6 +15,7 @@ from observers.rules.site import public_place_deg
 def campaign_shown(campaign: Campaign) -> state.CampaignShown:
     """The campaign itself."""
     source = campaign.source_model
+    first = first_light_at(source, campaign.event_time)
     return {
         "id": campaign.pk,
         "title": campaign.title,
@@ -24,7 +26,11 @@ def campaign_shown(campaign: Campaign) -> state.CampaignShown:
         "event_time": iso_time(campaign.event_time),
         "opened_at": iso_time(campaign.opened_at),
         "closed_at": iso_time(campaign.closed_at),
-        "source": {"preset": source.get("preset", ""), "label": source.get("label", "")},
+        "source": {
+            "preset": source.get("preset", ""),
+            "label": source.get("label", ""),
+            "first_light_at": iso_time(first) if first else None,
+        },
     }
 
 
@@ -38,6 +44,8 @@ def region_shown(region: RegionRevision) -> state.RegionShown:
         "area_deg2": region.area_deg2,
         "peak": region.peak,
         "notes": region.notes,
+        "overlap": region.overlap,
+        "change": region.change,
     }
 
 
@@ -85,6 +93,7 @@ def tile_shown(tile: Tile) -> state.TileShown:
         "height_deg": tile.height_deg,
         "probability": tile.probability,
         "seats": tile.seats,
+        "is_dropped": tile.is_dropped,
     }
 
 

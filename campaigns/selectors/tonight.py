@@ -21,6 +21,10 @@ from skytiles.night.twilight import dark_intervals
 NIGHT_HOURS = 24.0
 CURVE_STEP_MINUTES = 15
 MOST_CURVES = 12
+# A tenth of a second.
+_SEARCH_ERROR_D = 1e-6
+
+Span = tuple[float, float]
 
 
 class CurvePoint(TypedDict):
@@ -31,7 +35,7 @@ class CurvePoint(TypedDict):
 
 
 class Night(TypedDict):
-    """The present or next darkness at the site; null where the Sun does not go down."""
+    """The present or next darkness at the site; null for what lies more than a day away."""
 
     dusk: str | None
     dawn: str | None
@@ -78,15 +82,15 @@ def get_tonight(campaign: Campaign, instrument: Instrument, *, wall_now: datetim
         *(one["tile"] for one in suggested),
         *(offer.tile.number for offer in offers),
     ]
-    dark = _next_darkness(instrument, now=now)
+    dark = _darkness(instrument, now=now)
     return {
         "instrument": instrument.pk,
         "now": iso_time(now),
         "claims": [{"id": claim.pk, **claim_shown(claim)} for claim in claims],
         "offers": [offer_shown(offer) for offer in offers],
         **best,
-        "curves": _curves(campaign, instrument, numbers=numbers, dark=dark),
-        "night": _night(dark),
+        "curves": _curves(campaign, instrument, numbers=numbers, dark=_still_to_come(dark, now)),
+        "night": _night(dark, now=now),
     }
 
 
@@ -103,17 +107,31 @@ def _offers(campaign: Campaign, instrument: Instrument, *, now: datetime) -> lis
     return list(rows.select_related("tile").order_by("starts_at", "id"))
 
 
-def _next_darkness(instrument: Instrument, *, now: datetime) -> tuple[float, float] | None:
+def _darkness(instrument: Instrument, *, now: datetime) -> Span | None:
+    """The present darkness from its dusk on, or the next one; a day either way."""
+    now_mjd = bridge.mjd_of(now)
     dark = dark_intervals(
-        place_of(instrument.site), start_mjd=bridge.mjd_of(now), hours=NIGHT_HOURS
+        place_of(instrument.site),
+        start_mjd=now_mjd - NIGHT_HOURS / 24.0,
+        hours=2.0 * NIGHT_HOURS,
     )
-    return dark[0] if dark else None
+    return next(((start, end) for start, end in dark if end > now_mjd), None)
 
 
-def _night(dark: tuple[float, float] | None) -> Night:
+def _still_to_come(dark: Span | None, now: datetime) -> Span | None:
+    return None if dark is None else (max(dark[0], bridge.mjd_of(now)), dark[1])
+
+
+def _night(dark: Span | None, *, now: datetime) -> Night:
     if dark is None:
         return {"dusk": None, "dawn": None}
-    return {"dusk": iso_time(bridge.time_of(dark[0])), "dawn": iso_time(bridge.time_of(dark[1]))}
+    return {"dusk": _within_a_day(dark[0], now=now), "dawn": _within_a_day(dark[1], now=now)}
+
+
+def _within_a_day(mjd: float, *, now: datetime) -> str | None:
+    """A darkness that was cut off where the search ends has no dusk or dawn there."""
+    is_cut = abs(mjd - bridge.mjd_of(now)) > NIGHT_HOURS / 24.0 - _SEARCH_ERROR_D
+    return None if is_cut else iso_time(bridge.time_of(mjd))
 
 
 def _curves(

@@ -8,6 +8,7 @@ from tests.campaigns import stage
 @pytest.fixture(autouse=True)
 def uploads(settings, tmp_path):
     settings.UPLOADS = tmp_path / "uploads"
+    settings.COMPUTED = tmp_path / "computed"
 
 
 @pytest.fixture(autouse=True)

@@ -8,9 +8,13 @@ from concurrent.futures import ThreadPoolExecutor
 
 from django.db import connection
 
+import campaigns.bridge as bridge
 from campaigns.actions import claim_tile as module
+from campaigns.actions.add_constraints import add_constraints
 from campaigns.actions.answer_once import Once, answer_once
+from campaigns.actions.lay_grids import lay_grid
 from campaigns.errors import CampaignError
+from campaigns.ingest.alert_file import alert_of_message
 from campaigns.models import Claim, Event, IdempotencyKey, Tile
 from observers.models import Role
 from tests.campaigns import stage
@@ -44,6 +48,52 @@ def same_key(n_threads):
         "n_keys": IdempotencyKey.objects.count(),
         "is_gapless": _is_gapless(campaign),
     }
+
+
+def revise(n_threads):
+    """Coordinators revise the region while somebody registers new gear."""
+
+    campaign, (camera,) = _network(1)
+    actor = campaign.made_by
+
+    def work(number):
+        if number == 0:
+            wide = stage.make_instrument(camera.site, "wide", width_deg=5.0, height_deg=5.0)
+            return f"{lay_grid(campaign, wide, wall_now=stage.NOW) > 0}"
+        kept = alert_of_message(stage.cone_alert(radius_deg=2.0 + number), now=stage.NOW)
+        try:
+            answer = add_constraints(
+                actor, campaign, kept, despite_time_apart=False, wall_now=stage.NOW
+            )
+        except CampaignError as refusal:
+            return refusal.code
+        return str(answer.status)
+
+    answers = Counter(_all_at_once(range(n_threads), work))
+    revisions = campaign.regions.order_by("revision")
+    newest = revisions.last()
+    shares = bridge.tile_shares(campaign.tiles.all(), bridge.region_of(newest))
+    return {
+        "answers": answers,
+        "revisions": list(revisions.values_list("revision", flat=True)),
+        "in_use": newest.constraints_on,
+        "positions": list(campaign.constraints.values_list("position", flat=True)),
+        "worst_tile": max(
+            abs(tile.probability - shares[tile.number]) for tile in campaign.tiles.all()
+        ),
+        "base_is_newest": _newest_revised_seq(campaign) == _ledger_base_seq(campaign),
+        "is_gapless": _is_gapless(campaign),
+    }
+
+
+def _newest_revised_seq(campaign):
+
+    return Event.objects.filter(campaign=campaign, kind="region.revised").last().seq
+
+
+def _ledger_base_seq(campaign):
+
+    return type(campaign).objects.get(pk=campaign.pk).ledger_base_seq
 
 
 def throughput(n_claims):

@@ -73,3 +73,17 @@ def test_twenty_writers_meet_no_error(contest):
     outcome = contest("throughput", 200)
     assert outcome["answers"] == {"201": 200}
     assert outcome["is_gapless"]
+
+
+def test_revisions_at_the_same_time_come_one_after_the_other(contest):
+    outcome = contest("revise", 5)
+    answers = outcome["answers"]
+    n_added = answers["201"]
+    assert answers.pop("True") == 1
+    assert n_added + answers.get("region-moved", 0) == 4
+    # Whoever is told to look again has changed nothing; everybody else stands in the record.
+    assert outcome["revisions"] == list(range(1, n_added + 2))
+    assert outcome["positions"] == outcome["in_use"] == list(range(n_added + 1))
+    assert outcome["worst_tile"] < 1e-12
+    assert outcome["base_is_newest"]
+    assert outcome["is_gapless"]

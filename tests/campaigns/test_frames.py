@@ -197,7 +197,20 @@ def test_a_field_below_the_horizon_names_the_shifts_that_fit(campaign, camera):
     low = typed(dec_deg=DEC_DEG - 10, mid_time=later(hours=-12))
     with pytest.raises(InvalidInput, match="below the horizon") as refusal:
         send(campaign, camera, low)
-    assert 12 in refusal.value.extras["fitting_shifts_h"]
+    # NOW, when the field is high; an hour later would be the future.
+    assert max(refusal.value.extras["fitting_shifts_h"]) == 12
+
+
+def test_no_shift_leads_into_the_future_or_long_before_the_event(campaign, camera):
+    low = typed(dec_deg=DEC_DEG - 10, mid_time=later(hours=-9))
+    with pytest.raises(InvalidInput, match="below the horizon") as refusal:
+        send(campaign, camera, low)
+    shifts_h = refusal.value.extras["fitting_shifts_h"]
+    assert len(shifts_h) > 3
+    for shift_h in shifts_h:
+        shifted = low["mid_time"] + timedelta(hours=shift_h)
+        assert EVENT_TIME - timedelta(days=1) <= shifted <= NOW
+        send(campaign, camera, low | {"mid_time": shifted})
 
 
 def test_a_closed_campaign_takes_no_report(campaign, camera):

@@ -3,6 +3,7 @@
 import json
 from datetime import datetime, timedelta
 
+from campaigns.actions.add_constraints import add_constraints
 from campaigns.actions.claim_tile import claim_tile
 from campaigns.actions.close_campaign import close_campaign
 from campaigns.actions.correct_frame import correct_frame
@@ -15,7 +16,9 @@ from campaigns.actions.register_instrument import register_instrument
 from campaigns.actions.release_claim import release_claim
 from campaigns.actions.report_frame import Depth, report_frame
 from campaigns.actions.set_status import set_status
+from campaigns.actions.switch_constraint import retract_constraint, switch_constraint
 from campaigns.actions.withdraw_frame import withdraw_frame
+from campaigns.ingest.alert_file import alert_of_message
 from campaigns.ingest.frame_report import read_report
 from campaigns.models import Claim
 from campaigns.selectors.events import list_events_since
@@ -75,6 +78,7 @@ def record_cases():
     play.act(
         "a second claim, lapsed by the next claimer", lambda: take(other, free[1], wall_now=shot)
     )
+    _revise(play, campaign, coordinator, now=shot)
     end = shot + timedelta(hours=1)
     play.act("claim of an overdue tile", lambda: take(taker, free[1], wall_now=end))
     play.act(
@@ -125,6 +129,33 @@ class _Play:
     def _note(self, name, before, events, after):
         case = {"name": name, "before": before, "events": events, "after": after}
         self.cases.append(json.loads(json.dumps(case)))
+
+
+def _revise(play, campaign, coordinator, *, now):
+    """Tiles drop out, come back and are new; claims and frames stay as they are."""
+
+    def add():
+        alert = stage.cone_alert(radius_deg=0.6)
+        alert["constraints"][0]["dec_deg"] += 3.0
+        kept = alert_of_message(alert, now=now)
+        return add_constraints(
+            coordinator, _again(campaign), kept, despite_time_apart=False, wall_now=now
+        )
+
+    def switch(number, *, is_on):
+        return lambda: switch_constraint(
+            coordinator, _again(campaign), number=number, is_on=is_on, wall_now=now
+        )
+
+    play.act("a constraint is added", add)
+    play.act("the first constraint is switched off", switch(1, is_on=False))
+    assert play.state["region"]["change"]["tiles_dropped"]
+    play.act("the first constraint is switched on", switch(1, is_on=True))
+    retract = {"number": 2, "wall_now": now}
+    play.act(
+        "the second is retracted",
+        lambda: retract_constraint(coordinator, _again(campaign), **retract),
+    )
 
 
 def _again(row):

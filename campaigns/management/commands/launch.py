@@ -12,6 +12,8 @@ from campaigns.actions.launch_campaign import LaunchWish, launch_campaign
 from campaigns.actions.operator_account import operator_account
 from campaigns.ingest.alert_file import alert_of_path
 from campaigns.management.json_command import JsonCommand
+from skytiles.region.make_region import PRIORS
+from skytiles.source.presets import PRESETS
 
 
 class Command(JsonCommand):
@@ -22,9 +24,20 @@ class Command(JsonCommand):
     def add_arguments(self, parser: ArgumentParser) -> None:
         """The file and what the coordinator chooses."""
         super().add_arguments(parser)
-        parser.add_argument("file", metavar="FILE", help="HEALPix FITS map, or alert in JSON")
+        parser.add_argument("file", metavar="FILE", help="sky map, MOC, VOEvent, or alert in JSON")
         parser.add_argument("--title", required=True, help="what everybody will call it")
-        parser.add_argument("--source", default="steady", help="source model (default: steady)")
+        parser.add_argument(
+            "--source",
+            default="steady",
+            metavar="PRESET",
+            help=f"source model: {', '.join(PRESETS)} (default: steady)",
+        )
+        parser.add_argument(
+            "--prior",
+            choices=PRIORS,
+            default="",
+            help="where sources are (default: what suits the source model)",
+        )
         parser.add_argument("--draft", action="store_true", help="do not open it yet")
 
     def answer(self, options: Mapping[str, Any]) -> dict[str, Any]:
@@ -34,7 +47,10 @@ class Command(JsonCommand):
         for note in kept.alert.notes:
             self.say(note)
         wish = LaunchWish(
-            title=options["title"], source=options["source"], is_draft=options["draft"]
+            title=options["title"],
+            source=options["source"],
+            prior=options["prior"],
+            is_draft=options["draft"],
         )
         launched = launch_campaign(
             operator_account(now=now), kept, wish=wish, wall_now=now, rng=random.SystemRandom()

@@ -23,7 +23,7 @@ class Command(JsonCommand):
     def add_arguments(self, parser: ArgumentParser) -> None:
         """The file and the prior."""
         super().add_arguments(parser)
-        parser.add_argument("file", metavar="FILE", help="HealPix FITS map, or alert in JSON")
+        parser.add_argument("file", metavar="FILE", help="sky map, MOC, VOEvent, or alert in JSON")
         parser.add_argument(
             "--prior", choices=["flat", "galactic"], default="flat", help="default: flat"
         )

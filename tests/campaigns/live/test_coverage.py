@@ -36,6 +36,7 @@ class Ledger:
         if self.is_broken:
             raise OSError("no database")
         return Coverage(
+            revision=1,
             through_seq=self.through_seq,
             imaged=float(np.count_nonzero(self.detected)) / 50,
             searched=float(self.detected.mean()),

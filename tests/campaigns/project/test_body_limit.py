@@ -36,14 +36,18 @@ def _send(path, *, stated=None, chunks=()):
 
 
 @pytest.mark.parametrize(
-    ("path", "stated"),
-    [("/api/v1/session", LIMIT + 1), ("/api/v1/region", UPLOAD_LIMIT + 1), ("/", 10**15)],
+    ("path", "stated", "code"),
+    [
+        ("/api/v1/session", LIMIT + 1, "body-too-large"),
+        ("/api/v1/region", UPLOAD_LIMIT + 1, "upload-too-large"),
+        ("/", 10**15, "body-too-large"),
+    ],
 )
-def test_a_body_that_says_it_is_too_large_is_not_read(path, stated):
+def test_a_body_that_says_it_is_too_large_is_not_read(path, stated, code):
     status, body, n_read = _send(path, stated=stated, chunks=[b"x"])
     assert (status, n_read) == (413, 0)
     problem = orjson.loads(body)
-    assert problem["code"] == "body-too-large"
+    assert problem["code"] == code
     assert problem["advice"]
 
 

@@ -13,6 +13,7 @@ import { BLOCK, dataBytes, isTrue, numberOf, readCards } from "./cards.js";
 const MAX_HEADER_BYTES = 1_000_000;
 const FIRST_READ = 4 * BLOCK;
 const MAX_EXTENSIONS = 8;
+const MAX_PICTURES = 128;
 
 export { HeaderTrouble };
 
@@ -58,21 +59,33 @@ function trueSizes(cards) {
 }
 
 /**
- * Cards of the first picture, then those of the primary header, which its extensions inherit.
+ * Cards of the pictures in the extensions: of the first one, or of all that have a plate solution.
  * @param {ByteSource} source @param {Card[]} primary @param {number} headerBytes
- * @returns {Promise<Card[]>}
+ * @returns {Promise<Card[][]>}
  */
-async function firstExtensionPicture(source, primary, headerBytes) {
+async function extensionPictures(source, primary, headerBytes) {
   let at = headerBytes + dataBytes(primary);
   let left = MAX_HEADER_BYTES - headerBytes;
-  for (let n = 0; n < MAX_EXTENSIONS && left > BLOCK; n += 1) {
+  /** @type {Card[][]} */
+  const pictures = [];
+  for (let n = 0; n < limitOf(pictures) && left > BLOCK; n += 1) {
     const header = await headerAt(source, at, left);
     if (!header || !header.cards.some(({ keyword }) => keyword === "XTENSION")) break;
-    if (isPicture(header.cards)) return [...trueSizes(header.cards), ...withoutSizes(primary)];
+    if (isPicture(header.cards)) pictures.push(trueSizes(header.cards));
     at += header.headerBytes + dataBytes(header.cards);
     left -= header.headerBytes;
   }
-  throw new HeaderTrouble("There is no picture in this file.", "Choose the file that holds the frame.");
+  return pictures;
+}
+
+/** Without a plate solution the first picture is enough. @param {Card[][]} pictures */
+function limitOf(pictures) {
+  return pictures.length === 0 || isSolved(pictures[0]) ? MAX_PICTURES : MAX_EXTENSIONS;
+}
+
+/** @param {Card[]} cards */
+function isSolved(cards) {
+  return cards.some(({ keyword }) => keyword === "CTYPE1") && cards.some(({ keyword }) => keyword === "CRVAL1");
 }
 
 /** @param {Card[]} cards */
@@ -81,16 +94,25 @@ function withoutSizes(cards) {
 }
 
 /**
- * The allow-listed keywords of a frame.
+ * The allow-listed keywords of a frame, and of each picture where several were exposed together.
  * @param {Blob} file
- * @returns {Promise<Record<string, string|number>>}
+ * @returns {Promise<{header: Record<string, string|number>, pictures: Record<string, string|number>[]}>}
  */
-export async function readHeader(file) {
+export async function readFrame(file) {
   const source = await byteSource(file);
   const start = new TextDecoder("latin1").decode(await source.read(0, 9));
   if (!start.startsWith("SIMPLE  =")) throw NOT_FITS();
   const primary = await headerAt(source, 0, MAX_HEADER_BYTES);
   if (!primary) throw NOT_FITS();
-  if (isPicture(primary.cards)) return allowedKeywords(primary.cards);
-  return allowedKeywords(await firstExtensionPicture(source, primary.cards, primary.headerBytes));
+  if (isPicture(primary.cards)) return { header: allowedKeywords(primary.cards), pictures: [] };
+  const found = await extensionPictures(source, primary.cards, primary.headerBytes);
+  if (found.length === 0) throw new HeaderTrouble("There is no picture in this file.", "Choose the file that holds the frame.");
+  const header = allowedKeywords([...found[0], ...withoutSizes(primary.cards)]);
+  const solved = found.filter(isSolved);
+  return { header, pictures: solved.length > 1 ? solved.map(allowedKeywords) : [] };
+}
+
+/** The allow-listed keywords of the first picture. @param {Blob} file */
+export async function readHeader(file) {
+  return (await readFrame(file)).header;
 }

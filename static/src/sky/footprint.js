@@ -4,6 +4,8 @@
  * @typedef {import("./vectors.js").Vector} Vector
  * @typedef {{shape: "polygon", corners_deg: [number, number][]}} PolygonJson
  * @typedef {{shape: "circle", ra_deg: number, dec_deg: number, diameter_deg: number}} CircleJson
+ * @typedef {{shape: "mosaic", ra_deg: number, dec_deg: number, parts: (PolygonJson | CircleJson)[]}} MosaicJson
+ * @typedef {PolygonJson | CircleJson | MosaicJson} FootprintJson
  * @typedef {object} Outline
  * @property {Vector[]} corners    counter-clockwise as seen from outside the sphere, or the other way round
  * @property {Vector} centre
@@ -65,6 +67,31 @@ export function polygonOutline(corners_deg) {
 export function footprintOutline(footprint) {
   if (footprint.shape === "circle") return circleOutline(footprint, footprint.diameter_deg / 2);
   return polygonOutline(footprint.corners_deg);
+}
+
+/** One outline for each picture of a frame. @param {FootprintJson} footprint @returns {Outline[]} */
+export function footprintOutlines(footprint) {
+  return footprint.shape === "mosaic" ? footprint.parts.map(footprintOutline) : [footprintOutline(footprint)];
+}
+
+/**
+ * Whether a frame covers a direction. An outline may bend inwards: it is the fan of triangles from
+ * its middle to its sides.
+ * @param {FootprintJson} footprint @param {Vector} v
+ */
+export function isUnderFrame(footprint, v) {
+  return footprintOutlines(footprint).some((outline) => isInFan(outline, v));
+}
+
+/** @param {Outline} outline @param {Vector} v */
+function isInFan({ corners, centre, cos_radius }, v) {
+  if (dot(v, centre) < cos_radius - 1e-12) return false;
+  const side = Math.sign(dot(cross(corners[0], corners[1]), centre));
+  return corners.some((corner, i) => {
+    const next = corners[(i + 1) % corners.length];
+    const edges = [cross(centre, corner), cross(corner, next), cross(next, centre)];
+    return edges.every((edge) => side * dot(edge, v) >= -1e-12);
+  });
 }
 
 /**

@@ -53,6 +53,12 @@ function examined(state, { number, ...changes }) {
   return amend(state, "frames", number, changes);
 }
 
+/** @param {State} state @param {any} payload */
+function revised(state, { region, tiles }) {
+  const moved = Object.entries(tiles).map(([number, change]) => [number, { ...state.tiles[number], ...change }]);
+  return { ...state, region, tiles: { ...state.tiles, ...Object.fromEntries(moved) } };
+}
+
 /** @type {Record<string, (state: State, payload: any) => State>} */
 const CHANGES = {
   "campaign.opened": (state, { opened_at }) => ({
@@ -63,7 +69,7 @@ const CHANGES = {
     ...state,
     campaign: { ...state.campaign, status: "closed", closed_at },
   }),
-  "region.revised": (state, { region }) => ({ ...state, region }),
+  "region.revised": revised,
   "tiles.laid": (state, { tiles }) => ({ ...state, tiles: { ...state.tiles, ...tiles } }),
   "observer.joined": (state, { id, observer }) => set(state, "observers", id, observer),
   "observer.status": (state, { observer, status }) => amend(state, "observers", observer, { status }),

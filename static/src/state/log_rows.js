@@ -1,5 +1,7 @@
 /** What the Log shows: events by what they are about, frames with how they count. */
 
+import { isBeforeLight } from "./first_light.js";
+
 /** Groups of kinds, by the word before the dot. @type {Record<string, string[]>} */
 export const GROUPS = {
   all: [],
@@ -18,9 +20,15 @@ export function eventsOf(events, group) {
   return [...wanted].reverse();
 }
 
-/** How a frame counts, in words. @param {import("./shapes.js").FrameShown} frame @returns {string} */
-export function countsAs(frame) {
+/**
+ * How a frame counts, in words.
+ * @param {import("./shapes.js").FrameShown} frame
+ * @param {import("./shapes.js").CampaignShown["source"]} [source]
+ * @returns {string}
+ */
+export function countsAs(frame, source) {
   if (frame.state === "withdrawn") return "withdrawn";
+  if (isBeforeLight(frame, source)) return "imaged: before any light could have arrived";
   if (!frame.is_examined) return "imaged: nobody has examined it";
   if (frame.m_eff === null) return "imaged: no limit";
   return `searched to ${frame.m_eff.toFixed(1)}`;

@@ -11,7 +11,7 @@
  * @property {string} event_time
  * @property {string | null} opened_at
  * @property {string | null} closed_at
- * @property {{preset: string, label: string}} source
+ * @property {{preset: string, label: string, first_light_at?: string | null}} source
  *
  * @typedef {object} RegionShown
  * @property {number} revision
@@ -21,6 +21,16 @@
  * @property {Record<string, number>} area_deg2
  * @property {{ra_deg: number, dec_deg: number}} peak
  * @property {string[]} notes
+ * @property {number | null} overlap
+ * @property {ChangeShown | null} change
+ *
+ * @typedef {object} ChangeShown
+ * @property {"added" | "replaced" | "switched on" | "switched off" | "retracted"} way
+ * @property {string} said
+ * @property {Record<string, number>} area_before_deg2
+ * @property {number} n_tiles_new
+ * @property {number[]} tiles_dropped
+ * @property {number[]} tiles_back
  *
  * @typedef {{name: string, latitude_deg: number, longitude_deg: number}} SiteShown
  *
@@ -47,6 +57,7 @@
  * @property {number} height_deg
  * @property {number} probability
  * @property {number} seats
+ * @property {boolean} is_dropped
  *
  * @typedef {object} PlanShown
  * @property {string} made_at
@@ -82,7 +93,7 @@
  * @property {number} instrument
  * @property {number | null} tile
  * @property {"counted" | "withdrawn"} state
- * @property {import("../sky/footprint.js").PolygonJson | import("../sky/footprint.js").CircleJson} footprint
+ * @property {import("../sky/footprint.js").FootprintJson} footprint
  * @property {string} mid_time
  * @property {number} duration_s
  * @property {string} band

@@ -6,10 +6,11 @@
  * @typedef {{headline: string, lines: string[]}} Story
  */
 
-import { footprintOutline, isInside } from "../sky/footprint.js";
+import { isUnderFrame } from "../sky/footprint.js";
 import { altitudeDeg } from "../sky/site_sky.js";
 import { sunRaDec } from "../sky/sun_moon.js";
 import { unitVector } from "../sky/vectors.js";
+import { isBeforeLight } from "./first_light.js";
 import { countText, momentText, sizeText, smallPercentText } from "./words.js";
 
 const LOWEST_ALTITUDE_DEG = 20;
@@ -80,8 +81,21 @@ function endedLine(state, claim, when) {
 export function framesOver(state, tile) {
   const middle = unitVector(tile.ra_deg, tile.dec_deg);
   return Object.values(state.frames).filter(
-    (frame) => frame.state === "counted" && isInside(footprintOutline(frame.footprint), middle),
+    (frame) => frame.state === "counted" && isUnderFrame(frame.footprint, middle),
   );
+}
+
+/**
+ * How deep the frames over a tile have searched; those from before any light are named apart.
+ * @param {FrameShown[]} frames
+ * @param {import("./shapes.js").CampaignShown["source"]} [source]
+ * @returns {string[]}
+ */
+export function frameLines(frames, source) {
+  const early = frames.filter((frame) => isBeforeLight(frame, source));
+  const lines = [depthLine(frames.filter((frame) => !early.includes(frame)))];
+  if (early.length > 0) lines.push(`${countText(early.length, "frame")} from before any light could have arrived: nothing searched by that`);
+  return lines;
 }
 
 /** @param {FrameShown[]} frames @returns {string} */
@@ -144,8 +158,9 @@ export function tileStory(state, number, share, now_ms) {
     headline: `tile ${number} · ${sizeText(tile.width_deg, tile.height_deg)}`,
     lines: [
       `${smallPercentText(whole)} of the probability${left}`,
+      ...(tile.is_dropped ? ["dropped out of the region: no new claim"] : []),
       ...whoLines(state, number, now_ms),
-      depthLine(framesOver(state, tile)),
+      ...frameLines(framesOver(state, tile), state.campaign.source),
       whoCouldLine(state, tile, now_ms),
     ],
   };

@@ -11,9 +11,28 @@ function serverPattern() {
   return new RegExp(`^(?:${pattern})$`);
 }
 
+/** Every name that a pattern of plain letters, [..] and {1,2} stands for. @param {string} pattern */
+function namesOf(pattern) {
+  const pieces = [...pattern.matchAll(/(\[[^\]]+\]|[^[{])(\{1,2\})?/g)];
+  return pieces.reduce((names, [, piece, twice]) => {
+    const letters = piece.length === 1 ? [piece] : piece === "[0-9]" ? [..."0123456789"] : [...piece.slice(1, -1)];
+    const pairs = twice ? letters.filter((letter) => letter !== "0").flatMap((first) => letters.map((second) => first + second)) : [];
+    return names.flatMap((name) => [...letters, ...pairs].map((letter) => name + letter));
+  }, [""]);
+}
+
+/** The device brings the sizes of a compressed picture into NAXISn itself. */
+const ONLY_ON_THE_SERVER = new Set(["ZNAXIS", "ZNAXIS1", "ZNAXIS2"]);
+
 test("the device sends nothing that the server would drop", () => {
   const pattern = serverPattern();
   assert.deepEqual([...NAMES].filter((name) => !pattern.test(name)), []);
+});
+
+test("the device drops nothing that the server would take", () => {
+  const taken = serverPattern().source.slice(4, -2).split("|").flatMap(namesOf);
+  assert.ok(taken.length > 400 && taken.includes("PC001002") && taken.includes("PV2_39") && taken.includes("B_0_3"));
+  assert.deepEqual(taken.filter((name) => !NAMES.has(name) && !ONLY_ON_THE_SERVER.has(name)), []);
 });
 
 test("no keyword of a person, a place or a file is on the list", () => {

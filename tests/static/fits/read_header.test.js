@@ -1,7 +1,7 @@
 import assert from "node:assert/strict";
 import { test } from "node:test";
 import { gzipSync } from "node:zlib";
-import { readHeader } from "../../../static/src/fits/read_header.js";
+import { readFrame, readHeader } from "../../../static/src/fits/read_header.js";
 import { dataOf, headerBytes, picture } from "./fits_bytes.js";
 
 /** @param {...Buffer} parts */
@@ -78,3 +78,26 @@ for (const [name, blob, expected] of /** @type {[string, Blob, RegExp][]} */ ([
     await assert.rejects(readHeader(blob), expected);
   });
 }
+
+const SOLVED = /** @type {[string, any][]} */ ([["CTYPE1", "RA---TAN"], ["CTYPE2", "DEC--TAN"], ["CRVAL2", 20.0]]);
+
+/** @param {number} ra_deg @param {[string, any][]} more */
+function extension(ra_deg, more = SOLVED) {
+  return headerBytes([["XTENSION", "IMAGE"], ["BITPIX", 8], ["NAXIS", 2], ["NAXIS1", 60], ["NAXIS2", 40], ["PCOUNT", 0], ["GCOUNT", 1], ["CRVAL1", ra_deg], ["OBSERVER", "A. Person"], ...more]);
+}
+
+test("each solved picture of a mosaic is given, and nothing private of any", async () => {
+  const primary = headerBytes([["SIMPLE", true], ["BITPIX", 8], ["NAXIS", 0], ["EXPTIME", 30]]);
+  const pictures = [150, 150.5, 151, 151.5, 152, 152.5, 153, 153.5, 154, 154.5].flatMap((ra_deg) => [extension(ra_deg), dataOf(2400)]);
+  const frame = await readFrame(file(primary, ...pictures));
+  assert.equal(frame.header.EXPTIME, 30);
+  assert.deepEqual(frame.pictures.map(({ CRVAL1 }) => CRVAL1), [150, 150.5, 151, 151.5, 152, 152.5, 153, 153.5, 154, 154.5]);
+  assert.ok(frame.pictures.every((cards) => !("OBSERVER" in cards)));
+});
+
+test("one picture with others that are not solved is no mosaic", async () => {
+  const primary = headerBytes([["SIMPLE", true], ["BITPIX", 8], ["NAXIS", 0]]);
+  const frame = await readFrame(file(primary, extension(150), dataOf(2400), extension(0, []), dataOf(2400)));
+  assert.equal(frame.header.CRVAL1, 150);
+  assert.deepEqual(frame.pictures, []);
+});

@@ -1,12 +1,6 @@
 import assert from "node:assert/strict";
 import { test } from "node:test";
-import {
-  circleOutline,
-  footprintOutline,
-  isInside,
-  rectangleOutline,
-  shrunk,
-} from "../../../static/src/sky/footprint.js";
+import { circleOutline, footprintOutline, footprintOutlines, isInside, isUnderFrame, rectangleOutline, shrunk } from "../../../static/src/sky/footprint.js";
 import { clipped, gridLabels, gridLines, gridSteps, gridText } from "../../../static/src/sky/graticule.js";
 import { overlaps, placeLabels } from "../../../static/src/sky/labels.js";
 import { wholeSky } from "../../../static/src/sky/projections.js";
@@ -100,4 +94,20 @@ test("a piece of line is cut at the edge of the screen, or is not there", () => 
   assert.deepEqual(clipped([50, 60], [50, 500], size), [[50, 60], [50, 118]]);
   assert.deepEqual(clipped([-92, 60], [208, 60], size), [[8, 60], [100, 60]]);
   assert.equal(clipped([-50, 60], [-10, 60], size), null);
+});
+
+test("a mosaic is under each of its pictures, not between them", () => {
+  const square = (/** @type {number} */ ra_deg) => ({ shape: /** @type {const} */ ("polygon"), corners_deg: [[ra_deg, -1], [ra_deg + 1, -1], [ra_deg + 1, 1], [ra_deg, 1]] });
+  const mosaic = /** @type {any} */ ({ shape: "mosaic", ra_deg: 1.5, dec_deg: 0, parts: [square(0), square(2)] });
+  assert.equal(footprintOutlines(mosaic).length, 2);
+  assert.deepEqual([0.5, 1.5, 2.5].map((ra_deg) => isUnderFrame(mosaic, unitVector(ra_deg, 0))), [true, false, true]);
+});
+
+test("an outline that bends inwards ends where it bends", () => {
+  const corners_deg = [[-1, -1], [0, -0.5], [1, -1], [0.5, 0], [1, 1], [0, 0.5], [-1, 1], [-0.5, 0]];
+  for (const corners of [corners_deg, [...corners_deg].reverse()]) {
+    const frame = /** @type {any} */ ({ shape: "polygon", corners_deg: corners });
+    assert.ok(isUnderFrame(frame, unitVector(0, 0.45)) && isUnderFrame(frame, unitVector(0.9, 0.9)));
+    assert.ok(!isUnderFrame(frame, unitVector(0, 0.55)) && !isUnderFrame(frame, unitVector(0.55, 0)));
+  }
 });

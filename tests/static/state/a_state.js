@@ -17,9 +17,9 @@ export function aState() {
       8: { name: "Otter Bay", status: "silent", sites: [], instruments: [] },
     },
     tiles: {
-      1: { ra_deg: 10, dec_deg: 20, width_deg: 2, height_deg: 2, probability: 0.3, seats: 1 },
-      2: { ra_deg: 12.2, dec_deg: 20, width_deg: 2, height_deg: 2, probability: 0.2, seats: 1 },
-      3: { ra_deg: 10, dec_deg: 20, width_deg: 1, height_deg: 1, probability: 0.1, seats: 1 },
+      1: { ra_deg: 10, dec_deg: 20, width_deg: 2, height_deg: 2, probability: 0.3, seats: 1, is_dropped: false },
+      2: { ra_deg: 12.2, dec_deg: 20, width_deg: 2, height_deg: 2, probability: 0.2, seats: 1, is_dropped: false },
+      3: { ra_deg: 10, dec_deg: 20, width_deg: 1, height_deg: 1, probability: 0.1, seats: 1, is_dropped: false },
     },
     plan: null,
     offers: [],

@@ -66,7 +66,7 @@ test("a tile holds about its area in pixels, at the equator, over RA 0 and at th
   for (const [ra_deg, dec_deg] of [[10, 20], [0, 0], [120, 89.5]]) {
     const region = dec_deg > 80 ? patch(0, 90, 4) : patch(ra_deg, dec_deg, 3);
     const full = dec_deg > 80 ? fullCap() : region;
-    const n = new TilePixels(full).inside(1, { ra_deg, dec_deg, width_deg: 2, height_deg: 2, probability: 0, seats: 1 }).length;
+    const n = new TilePixels(full).inside(1, { ra_deg, dec_deg, width_deg: 2, height_deg: 2, probability: 0, seats: 1, is_dropped: false }).length;
     const expected = 4 / (41252.96125 / (12 * 4 ** 8));
     assert.ok(Math.abs(n - expected) < 0.08 * expected, `${n} pixels at ${ra_deg}, ${dec_deg}, not ${expected}`);
   }

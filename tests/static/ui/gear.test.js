@@ -1,6 +1,7 @@
 import assert from "node:assert/strict";
 import { test } from "node:test";
 import { instrumentValues } from "../../../static/src/ui/gear/instrument_values.js";
+import { horizonText, readHorizon } from "../../../static/src/ui/gear/horizon_words.js";
 import { eyepieceFieldDeg, fieldDeg, pixelArcsec } from "../../../static/src/ui/gear/optics.js";
 import { PRESETS, presetOf, presetValues } from "../../../static/src/ui/gear/presets.js";
 import { withField } from "../../../static/src/ui/gear/field_section.js";
@@ -40,4 +41,25 @@ test("words that are no numbers are named", () => {
   const lens = PRESETS[0];
   const { unread } = instrumentValues({ ...typed(lens), aperture_mm: "f/2.8", rotation_deg: "north" }, lens);
   assert.deepEqual(unread, ["aperture_mm", "rotation_deg"]);
+});
+
+test("a skyline is read from pairs of azimuth and altitude, in any order", () => {
+  assert.deepEqual(readHorizon("180 12, 90 35; 270.5 −2"), [[90, 35], [180, 12], [270.5, -2]]);
+  assert.deepEqual(readHorizon(""), []);
+  assert.deepEqual(readHorizon(horizonText([[0, 5], [355, 20.5]])), [[0, 5], [355, 20.5]]);
+});
+
+test("a skyline that cannot be read is not sent", () => {
+  for (const text of ["90", "90 35 12", "north 10", "361 10", "90 91"]) assert.equal(readHorizon(text), null, text);
+});
+
+test("an empty limit of the mount limits nothing, and a tick turns the mount over", () => {
+  const camera = PRESETS.find(({ id }) => id === "telescope");
+  const typed = { name: "n", site: "1", band: "V", ...presetValues(camera), max_hour_angle_h: "−0.5", min_dec_deg: "", turns_at_meridian: true };
+  const words = Object.fromEntries(Object.entries(typed).map(([name, value]) => [name, typeof value === "number" ? String(value) : value]));
+  const { values, unread } = instrumentValues(words, camera);
+  assert.deepEqual(unread, []);
+  assert.equal(values.max_hour_angle_h, -0.5);
+  assert.equal(values.min_dec_deg, null);
+  assert.equal(values.crosses_meridian, false);
 });

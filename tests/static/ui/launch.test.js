@@ -1,8 +1,8 @@
 import assert from "node:assert/strict";
 import { test } from "node:test";
 import { typedAlert } from "../../../static/src/ui/launch/alert_form.js";
-import { campaignBody } from "../../../static/src/ui/launch/campaign_body.js";
-import { openRadii, withContainment } from "../../../static/src/ui/launch/review.js";
+import { campaignBody, isExercise } from "../../../static/src/ui/launch/campaign_body.js";
+import { messageRows, openRadii, withContainment } from "../../../static/src/ui/launch/review.js";
 import { wayAfterSignIn } from "../../../static/src/ui/home/sign_in.js";
 
 const words = { ra_deg: "17 45 40", dec_deg: "-29 00 28", radius_deg: "5", containment: "0.9", event_time: "2027-03-14 05:06:07", role: "test", kind: "", id: "" };
@@ -22,11 +22,12 @@ test("what cannot be read is named, not guessed", () => {
 });
 
 test("a test message becomes a rehearsal whatever is ticked", () => {
-  const choices = { read: /** @type {any} */ ({ upload: "ab", alert: { role: "test" } }), given: /** @type {any} */ ({ file: {} }), typed: { title: "T", is_rehearsal: false }, numbers: { magnitude: 12, sigma_mag: 2 } };
+  const choices = { read: /** @type {any} */ ({ upload: "ab", alert: { role: "test" } }), given: /** @type {any} */ ({ file: { name: "sky.fits" } }), typed: { title: "T", is_rehearsal: false }, source: { preset: "steady", parameters: { magnitude: 14 } }, prior: "flat" };
   const body = campaignBody(choices);
   assert.equal(body.is_rehearsal, true);
   assert.equal(/** @type {any} */ (body).upload, "ab");
-  assert.deepEqual(body.source, { preset: "steady", parameters: { magnitude: 12, sigma_mag: 2 } });
+  assert.equal(/** @type {any} */ (body).filename, "sky.fits");
+  assert.deepEqual([body.source, body.prior], [choices.source, "flat"]);
   assert.equal(campaignBody({ ...choices, read: /** @type {any} */ ({ alert: { role: "observation" } }) }).is_rehearsal, false);
 });
 
@@ -42,4 +43,19 @@ test("after signing in one stays on this site", () => {
   for (const bad of ["?next=https://elsewhere.example/", "?next=//elsewhere.example", "?next=/%5Celsewhere.example", ""]) {
     assert.equal(wayAfterSignIn(bad), "/");
   }
+});
+
+test("a prediction becomes a rehearsal as well, whatever is ticked", () => {
+  assert.deepEqual(["test", "prediction", "observation"].map((role) => isExercise({ role })), [true, true, false]);
+});
+
+test("what a message cites and links is shown as words", () => {
+  const alert = { citations: [{ cite: "supersedes", id: "ivo://a/b#1" }], importance: 0, links: [{ uri: "https://a.example/", name: "map" }, { uri: "ivo://c", name: "" }] };
+  assert.deepEqual(messageRows(alert), [
+    ["cites", "supersedes ivo://a/b#1"],
+    ["importance", "0 of 1, as the sender sees it"],
+    ["links, not followed", "map: https://a.example/ · ivo://c"],
+  ]);
+  assert.deepEqual(messageRows({ importance: null, citations: [], links: [] }), []);
+  assert.deepEqual(messageRows({}), []);
 });

@@ -112,9 +112,7 @@ export class BoardModel {
     this.region = regionFromAnswer(answer);
     this.glow = new GlowLevels(this.region);
     this.tilePixels = new TilePixels(this.region);
-    if (this.coverage?.detected.length !== this.region.pixels.length) {
-      this.coverage = emptyCoverage(this.region.pixels.length);
-    }
+    this.coverage = emptyCoverage(this.region.pixels.length);
     this.#repaint();
     this.#touch("coverage", "tiles");
   }
@@ -125,7 +123,8 @@ export class BoardModel {
    */
   setCoverage(answer) {
     const coverage = coverageFromAnswer(answer);
-    if (this.region && coverage.detected.length !== this.region.pixels.length) return false;
+    // Counted on the pixels of another revision: both must be asked for anew.
+    if (this.region && answer.revision !== this.region.revision) return false;
     const waiting = this.#waiting.splice(0);
     this.coverage = waiting.reduce((held, message) => patched(held, message).coverage, coverage);
     this.#repaint();

@@ -1,7 +1,7 @@
 /** From what the Board knows to what the map draws. */
 
 import { closedLine } from "../../draw/lines.js";
-import { footprintOutline } from "../../sky/footprint.js";
+import { footprintOutlines } from "../../sky/footprint.js";
 
 /**
  * @typedef {import("./board_model.js").BoardModel} BoardModel
@@ -9,22 +9,22 @@ import { footprintOutline } from "../../sky/footprint.js";
  * @typedef {import("../../state/shapes.js").FrameShown} FrameShown
  */
 
-/** @type {WeakMap<FrameShown, Float64Array>} */
+/** @type {WeakMap<FrameShown, Float64Array[]>} */
 const frameLines = new WeakMap();
 
 /** @param {FrameShown} frame */
-function frameLine(frame) {
-  let line = frameLines.get(frame);
-  if (!line) {
-    line = closedLine(footprintOutline(frame.footprint).corners);
-    frameLines.set(frame, line);
+function linesOf(frame) {
+  let lines = frameLines.get(frame);
+  if (!lines) {
+    lines = footprintOutlines(frame.footprint).map(({ corners }) => closedLine(corners));
+    frameLines.set(frame, lines);
   }
-  return line;
+  return lines;
 }
 
 /** True footprints of counted frames. @param {BoardModel} model */
 export function drawnFrames({ state }) {
-  return Object.values(state?.frames ?? {}).filter((frame) => frame.state === "counted").map(frameLine);
+  return Object.values(state?.frames ?? {}).filter((frame) => frame.state === "counted").flatMap(linesOf);
 }
 
 /** Offers that begin later than this are drawn faintly. */

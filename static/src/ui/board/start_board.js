@@ -17,8 +17,10 @@ import { mapControls } from "./map_controls.js";
 import { networkPanel } from "./network_panel.js";
 import { numbersPanel } from "./numbers_panel.js";
 import { recentList } from "./recent_list.js";
+import { RegionPanel } from "./region_panel.js";
 import { drawnFrames, drawnTiles } from "./scene.js";
 import { SkyMap } from "./sky_map.js";
+import { sourcePanel } from "./source_panel.js";
 import { showCoordinates, tileCard } from "./tile_card.js";
 import { wayLine } from "./way_line.js";
 
@@ -129,6 +131,8 @@ export function startBoard() {
   const reader = new CoverageReader(campaign, model, (path) => ask(path));
   const map = startMap(model);
   numbersPanel(place("numbers"), model);
+  new RegionPanel(place("region"), model, { campaign, isCoordinator: role === "coordinator" });
+  sourcePanel(place("source"), campaign, (path) => ask(path));
   historyCurve(place("history"), model);
   const strip = new DarkStrip(place("dark"), model, (path) => ask(path));
   networkPanel(place("network"), model);

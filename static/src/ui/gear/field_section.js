@@ -45,6 +45,7 @@ function computeEyepieceField(form) {
   if (!optics) return false;
   const [focal_length_mm, eyepiece_mm, apparent_deg] = optics;
   put(form, "width_deg", eyepieceFieldDeg({ focal_length_mm, eyepiece_mm, apparent_deg }));
+  put(form, "magnification", focal_length_mm / eyepiece_mm);
   return true;
 }
 

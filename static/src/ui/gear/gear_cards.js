@@ -14,6 +14,7 @@ import { presetOf } from "./presets.js";
  * @property {number} sky_brightness_mag
  * @property {number} seeing_arcsec
  * @property {number} min_altitude_deg
+ * @property {[number, number][]} horizon_mask    the skyline: azimuth and altitude
  * @property {number} clear_chance
  */
 
@@ -36,7 +37,8 @@ function card(name, lines, onChange) {
 /** @param {Site} site @param {() => void} onChange */
 export function siteCard(site, onChange) {
   const sky = `sky ${site.sky_brightness_mag.toFixed(1)} mag per square arcsec · above ${Math.round(site.min_altitude_deg)}° · clear ${Math.round(site.clear_chance * 100)} % of nights`;
-  return card(site.name, [placeText(site), sky], onChange);
+  const skyline = site.horizon_mask.length > 0 ? [`skyline of ${site.horizon_mask.length} points`] : [];
+  return card(site.name, [placeText(site), sky, ...skyline], onChange);
 }
 
 /** @param {Instrument} instrument */

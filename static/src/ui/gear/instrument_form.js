@@ -7,6 +7,7 @@ import { forgetDraft, keepDraft, recallDraft } from "../shell/draft.js";
 import { element, fill } from "../shell/element.js";
 import { fieldSection } from "./field_section.js";
 import { readInstrument } from "./instrument_values.js";
+import { mountSection } from "./mount_section.js";
 import { PRESETS, presetOf, presetValues } from "./presets.js";
 
 /** @typedef {import("./gear_cards.js").Instrument} Instrument */
@@ -60,6 +61,7 @@ function seriesSection(values) {
 /** @param {Record<string, any>} values @param {Preset} preset */
 function lightSection(values, preset) {
   const isCamera = preset.values.kind === "camera";
+  const hasOptics = preset.values.kind === "eyepiece" || preset.values.kind === "binoculars";
   return element(
     "details",
     {},
@@ -70,6 +72,9 @@ function lightSection(values, preset) {
       field({ name: "throughput", label: "share of the light that counts", value: values.throughput, number: true, hint: "optics × filter × detector, 0 to 1" }),
       field({ name: "obstruction", label: "central obstruction", value: values.obstruction, number: true, hint: "share of the diameter" }),
       isCamera ? field({ name: "read_noise_e", label: "read noise", value: values.read_noise_e, unit: "e⁻", number: true }) : null,
+      isCamera ? field({ name: "dark_e_per_s", label: "dark current", value: values.dark_e_per_s, unit: "e⁻/s", number: true, hint: "of one pixel, as cooled" }) : null,
+      isCamera ? field({ name: "full_well_e", label: "full well", value: values.full_well_e, unit: "e⁻", number: true, hint: "where a pixel saturates" }) : null,
+      hasOptics ? field({ name: "magnification", label: "magnification", value: values.magnification ?? "", unit: "×", number: true, hint: "the first number on binoculars; empty: usual" }) : null,
       isCamera ? field({ name: "rotation_deg", label: "camera angle", value: values.rotation_deg, unit: "°", number: true, hint: "east of north; empty: not fixed" }) : null,
     ),
   );
@@ -129,6 +134,7 @@ function drawForm(job, values) {
     ...fieldSection(values, preset, form),
     ...seriesSection(values),
     lightSection(values, preset),
+    mountSection(values, preset),
     ...sunSection(values, preset),
     instrument ? tick({ name: "is_in_use", label: "in use: it is given tiles", isOn: values.is_in_use }) : null,
     said,

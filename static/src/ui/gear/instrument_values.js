@@ -2,12 +2,13 @@
 
 import { markField, readFields } from "../shell/controls.js";
 import { readNumber } from "../shell/numbers.js";
+import { meridianValue, MOUNT_LIMITS } from "./mount_section.js";
 import { presetValues } from "./presets.js";
 
 /** @typedef {import("./presets.js").Preset} Preset */
 
 const NEEDED = ["width_deg", "aperture_mm", "exposure_s", "n_exposures", "overhead_s", "slew_deg_per_s", "tiles_per_night", "throughput", "obstruction"];
-const OPTIONAL = ["focal_length_mm", "pixel_arcsec", "rotation_deg"];
+const OPTIONAL = ["focal_length_mm", "pixel_arcsec", "rotation_deg", "magnification", ...MOUNT_LIMITS];
 
 /**
  * Pure: values from words. `unread` names the fields that hold no number.
@@ -16,7 +17,7 @@ const OPTIONAL = ["focal_length_mm", "pixel_arcsec", "rotation_deg"];
 export function instrumentValues(typed, preset) {
   const isCircle = preset.values.shape === "circle";
   const isCamera = preset.values.kind === "camera";
-  const needed = [...NEEDED, ...(isCircle ? [] : ["height_deg"]), ...(isCamera ? ["read_noise_e", "sun_avoidance_deg"] : [])];
+  const needed = [...NEEDED, ...(isCircle ? [] : ["height_deg"]), ...(isCamera ? ["read_noise_e", "dark_e_per_s", "full_well_e", "sun_avoidance_deg"] : [])];
   const numbers = Object.fromEntries(needed.map((name) => [name, readNumber(typed[name])]));
   const optional = Object.fromEntries(OPTIONAL.map((name) => [name, typed[name] ? readNumber(typed[name]) : null]));
   const unread = [
@@ -26,7 +27,7 @@ export function instrumentValues(typed, preset) {
   const { kind, shape } = presetValues(preset);
   const solar = isCamera ? { is_daytime_rated: typed.is_daytime_rated === true, is_eye_free: typed.is_eye_free === true } : {};
   const height = isCircle ? { height_deg: numbers.width_deg } : {};
-  const values = { name: typed.name, site: Number(typed.site), kind, shape, band: typed.band, ...numbers, ...height, ...optional, ...solar };
+  const values = { name: typed.name, site: Number(typed.site), kind, shape, band: typed.band, ...numbers, ...height, ...optional, ...meridianValue(typed), ...solar };
   return { values, unread };
 }
 

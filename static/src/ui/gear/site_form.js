@@ -7,11 +7,12 @@ import { forgetDraft, keepDraft, recallDraft } from "../shell/draft.js";
 import { element } from "../shell/element.js";
 import { readAngle, readNumber } from "../shell/numbers.js";
 import { devicePlace } from "./device_place.js";
+import { horizonText, readHorizon } from "./horizon_words.js";
 
 /** @typedef {import("./gear_cards.js").Site} Site */
 /** @typedef {{onSaved: () => void, onLeft: () => void}} Ways */
 
-const NEW_SITE = { name: "", latitude_deg: "", longitude_deg: "", height_m: "", sky_brightness_mag: 20.5, seeing_arcsec: 3, min_altitude_deg: 20, clear_percent: 60 };
+const NEW_SITE = { name: "", latitude_deg: "", longitude_deg: "", height_m: "", sky_brightness_mag: 20.5, seeing_arcsec: 3, min_altitude_deg: 20, horizon_mask: [], clear_percent: 60 };
 
 /** @param {Site|null} site @returns {Record<string, any>} */
 function startingValues(site) {
@@ -45,6 +46,7 @@ function skyFields(values) {
     field({ name: "seeing_arcsec", label: "seeing", value: values.seeing_arcsec, unit: "″", number: true, hint: "usual blur of a star" }),
     field({ name: "min_altitude_deg", label: "lowest altitude you can use", value: values.min_altitude_deg, unit: "°", number: true, hint: "trees, houses, haze" }),
     field({ name: "clear_percent", label: "clear nights at this season", value: values.clear_percent, unit: "%", number: true, hint: "an honest guess" }),
+    field({ name: "horizon_mask", label: "skyline, where it is higher", value: typeof values.horizon_mask === "string" ? values.horizon_mask : horizonText(values.horizon_mask), isWide: true, hint: "azimuth and altitude, point by point: 90 35, 135 12, 270 20 (north 0, east 90); straight lines between; empty: none" }),
   );
 }
 
@@ -59,9 +61,11 @@ function siteValues(form) {
   const unread = Object.keys(all).filter((name) => all[name] === null);
   for (const name of unread) markField(form, name, "A number is needed here.");
   if (!typed.name) markField(form, "name", "A site needs a name.");
-  if (unread.length > 0 || !typed.name) return null;
+  const horizon_mask = readHorizon(typed.horizon_mask ?? "");
+  if (horizon_mask === null) markField(form, "horizon_mask", "Write pairs of azimuth and altitude with commas between: 90 35, 135 12.");
+  if (unread.length > 0 || !typed.name || horizon_mask === null) return null;
   const { clear_percent, ...rest } = all;
-  return { name: typed.name, ...rest, clear_chance: Number(clear_percent) / 100 };
+  return { name: typed.name, ...rest, horizon_mask, clear_chance: Number(clear_percent) / 100 };
 }
 
 /** @param {HTMLElement} form @param {HTMLElement} said */
@@ -98,7 +102,7 @@ export function siteForm(site, ways) {
     element("h3", {}, "Place"),
     placeFields(values),
     element("p", { class: "row" }, deviceButton(form, said)),
-    element("p", { class: "small quiet" }, "The exact place stays between you and the coordinators; everyone else sees it to 0.1 degree, about 10 km."),
+    element("p", { class: "small quiet" }, "The exact place and the skyline stay between you and the coordinators; everyone else sees the place to 0.1 degree, about 10 km, and no skyline."),
     element("h3", {}, "Sky"),
     skyFields(values),
     said,

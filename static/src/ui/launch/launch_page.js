@@ -23,7 +23,8 @@ import { reviewSection } from "./review.js";
  * @typedef {{json: any}|{file: File, message: any}} Given
  */
 
-const MAX_FILE_BYTES = 2 * 1024 ** 3;
+/** As the server (campaigns/ingest/uploads.py). */
+const MAX_FILE_BYTES = 256 * 1024 ** 2;
 
 /** @param {number} bytes */
 function sizeText(bytes) {
@@ -61,7 +62,7 @@ function refuseHuge(file) {
   if (file.size <= MAX_FILE_BYTES) return;
   throw new Problem({
     code: "too-large",
-    detail: `${file.name} has ${sizeText(file.size)}; an alert file has at most 2 GB.`,
+    detail: `${file.name} has ${sizeText(file.size)}; an alert file may have ${sizeText(MAX_FILE_BYTES)}.`,
     advice: "Choose the map file alone, or a multi-order version of it.",
   });
 }
@@ -82,7 +83,7 @@ class LaunchPage {
   showStart() {
     this.typed = {};
     const drop = fileDrop({
-      words: "Drop the alert file here: a HEALPix map, or the alert as JSON.",
+      words: "Drop the alert file here: a VOEvent message, a sky map or MOC, or the alert as JSON.",
       button: "choose the file",
       note: "Nothing is announced yet. You see the region first, then decide.",
       onFiles: ([file]) => void this.take(file),

@@ -5,11 +5,12 @@ import { choice, field, messagePlace, markField, readFields, showProblem, tick, 
 import { localClock, span, utcDay } from "../shell/clock.js";
 import { forgetDraft } from "../shell/draft.js";
 import { element, fill } from "../shell/element.js";
-import { perCent, readNumber, squareDegrees } from "../shell/numbers.js";
+import { perCent, squareDegrees } from "../shell/numbers.js";
 import { decimalText, decText, raText } from "../../sky/sexagesimal.js";
 import { ALERT_DRAFT, CONTAINMENTS } from "./alert_form.js";
-import { campaignBody } from "./campaign_body.js";
+import { campaignBody, isExercise } from "./campaign_body.js";
 import { regionMap } from "./region_map.js";
+import { SourceSection } from "./source_section.js";
 
 /** @typedef {import("./launch_page.js").RegionRead} RegionRead */
 /** @typedef {import("./launch_page.js").Given} Given */
@@ -23,6 +24,19 @@ function eventLine(alert) {
   return `${utcDay(date)} (${localClock(date)} here), ${ago >= 0 ? `${span(ago)} ago` : "in the future"}`;
 }
 
+/** What else a message says. Its links are words to read: nothing here follows them. @param {any} alert @returns {[string, string][]} */
+export function messageRows(alert) {
+  const cited = (alert.citations ?? []).map((/** @type {any} */ one) => `${one.cite} ${one.id}`);
+  const links = (alert.links ?? []).map((/** @type {any} */ one) => (one.name ? `${one.name}: ${one.uri}` : one.uri));
+  /** @type {[string, string][]} */
+  const rows = [
+    ["cites", cited.join(", ")],
+    ["importance", typeof alert.importance === "number" ? `${alert.importance} of 1, as the sender sees it` : ""],
+    ["links, not followed", links.join(" · ")],
+  ];
+  return rows.filter(([, words]) => words !== "");
+}
+
 /** @param {RegionRead} read */
 function facts({ alert, region }) {
   const { peak, area_deg2 } = region;
@@ -34,6 +48,7 @@ function facts({ alert, region }) {
     ["area", areas],
     ["brightest at", `${raText(peak.ra_deg)} ${decText(peak.dec_deg)} (${decimalText(peak)})`],
   ];
+  rows.push(...messageRows(alert));
   if (region.outside > 0) rows.push(["outside", `${perCent(region.outside)} lies outside what can be searched, and is kept in the account`]);
   return element("dl", { class: "facts" }, rows.flatMap(([name, value]) => [element("dt", {}, name), element("dd", {}, value)]));
 }
@@ -74,24 +89,10 @@ function titleFor({ alert }) {
   return [alert.kind, (alert.event_time ?? "").slice(0, 10)].filter(Boolean).join(" ");
 }
 
-/** The one source model of this version, its assumptions open to change. @param {Record<string, any>} typed */
-function sourceFields(typed) {
-  return [
-    element("h3", {}, "What the light could do"),
-    element("p", { class: "small quiet" }, "Steady light: a source that shines before and after the event at one brightness. Searched counts what would have been found under this assumption."),
-    element(
-      "div",
-      { class: "fields" },
-      field({ name: "magnitude", label: "most likely magnitude", value: typed.magnitude ?? "12.0", number: true, hint: "assumed" }),
-      field({ name: "sigma_mag", label: "spread, one sigma", value: typed.sigma_mag ?? "2.0", unit: "mag", number: true, hint: "assumed" }),
-    ),
-  ];
-}
-
-/** @param {boolean} isTest @param {Record<string, any>} typed */
-function rehearsalChoice(isTest, typed) {
-  if (isTest) {
-    return element("p", { class: "alarm" }, element("strong", {}, "A test message. "), "It can only become a rehearsal; every page of it will say so.");
+/** @param {string} role of a message that is no observation @param {Record<string, any>} typed */
+function rehearsalChoice(role, typed) {
+  if (role) {
+    return element("p", { class: "alarm" }, element("strong", {}, `A ${role} message. `), "It can only become a rehearsal; every page of it will say so.");
   }
   return tick({ name: "is_rehearsal", label: "This is a rehearsal.", hint: "every page of it will say so", isOn: typed.is_rehearsal === true });
 }
@@ -106,30 +107,33 @@ function confirmLive(place, go) {
   place.scrollIntoView({ block: "center" });
 }
 
-/** @param {HTMLFormElement} form @param {RegionRead} read @param {Given} given */
-function readChoices(form, read, given) {
+/** @param {HTMLFormElement} form @param {RegionRead} read @param {Given} given @param {SourceSection} section */
+function readChoices(form, read, given, section) {
   const typed = readFields(form);
-  const numbers = { magnitude: readNumber(typed.magnitude), sigma_mag: readNumber(typed.sigma_mag) };
-  const unread = Object.keys(numbers).filter((name) => numbers[/** @type {"magnitude"} */ (name)] === null);
-  for (const name of unread) markField(form, name, "A number is needed here.");
+  const { source, prior, unread } = section.read();
+  for (const name of unread) {
+    markField(form, name, "A number is needed here.");
+    form.querySelector(`[data-field="${CSS.escape(name)}"]`)?.closest("details")?.setAttribute("open", "");
+  }
   if (!typed.title) markField(form, "title", "A campaign needs a name.");
   if (unread.length > 0 || !typed.title) return null;
-  return campaignBody({ read, given, typed, numbers: /** @type {any} */ (numbers) });
+  return campaignBody({ read, given, typed, source, prior });
 }
 
 /** @param {RegionRead} read @param {Given} given @param {Page} page */
 function choicesForm(read, given, page) {
-  const isTest = read.alert.role === "test";
+  const role = isExercise(read.alert) ? read.alert.role : "";
   const said = messagePlace();
   const asked = element("div", {});
   const once = new SendOnce();
   const draft = element("button", { type: "button" }, "keep as a draft");
+  const section = new SourceSection(page.typed);
   const form = element(
     "form",
     { class: "stack panel", novalidate: true },
     field({ name: "title", label: "name of the campaign", value: page.typed.title ?? titleFor(read) }),
-    ...sourceFields(page.typed),
-    rehearsalChoice(isTest, page.typed),
+    section.node,
+    rehearsalChoice(role, page.typed),
     tick({ name: "is_public", label: "Onlookers without an account may watch.", hint: "places are shown to 0.1 degree", isOn: page.typed.is_public === true }),
     element("p", { class: "row" }, element("button", { type: "submit", class: "main" }, "go live"), draft),
     asked,
@@ -139,7 +143,7 @@ function choicesForm(read, given, page) {
     page.typed = readFields(form);
   });
   const open = async (/** @type {boolean} */ isDraft) => {
-    const body = readChoices(form, read, given);
+    const body = readChoices(form, read, given, section);
     if (!body) return;
     try {
       const made = await once.post("campaigns", { ...body, draft: isDraft });
@@ -152,7 +156,7 @@ function choicesForm(read, given, page) {
   };
   form.addEventListener("submit", (event) => {
     event.preventDefault();
-    if (readChoices(form, read, given)) confirmLive(asked, () => open(false));
+    if (readChoices(form, read, given, section)) confirmLive(asked, () => open(false));
   });
   draft.addEventListener("click", () => whileBusy(draft, () => open(true)));
   return form;

@@ -50,7 +50,7 @@ export class FrameTable {
       frame.mid_time.slice(0, 19).replace("T", " "),
       frame.band,
       frame.limit_mag === null ? "–" : `${frame.limit_mag.toFixed(1)} (${frame.limit_kind})`,
-      countsAs(frame),
+      countsAs(frame, state.campaign.source),
     ].map((text) => element("td", {}, text));
     return element("tr", { class: frame.state }, cells, element("td", {}, this.#act(number, frame, state)));
   }

@@ -18,7 +18,7 @@ function timeMs(value) {
 
 /** @param {Header} header @returns {number|null} seconds */
 export function headerDuration(header) {
-  const value = header.EXPTIME ?? header.EXPOSURE ?? header.EXP_TIME;
+  const value = header.EXPTIME ?? header.EXPOSURE ?? header.XPOSURE ?? header.EXP_TIME ?? header.TELAPSE;
   return typeof value === "number" && value > 0 ? value : null;
 }
 

@@ -4,6 +4,7 @@ import { choice, field, readFields, tick } from "../shell/controls.js";
 import { localClock, readUtc, utcClock } from "../shell/clock.js";
 import { element } from "../shell/element.js";
 import { readNumber } from "../shell/numbers.js";
+import { estimateButton } from "./depth_estimate.js";
 import { LIMIT_KINDS, limitFromStar, WAYS } from "./report_values.js";
 
 /** @param {string} text */
@@ -54,8 +55,7 @@ function computeLimit(form, said) {
     return;
   }
   put(form, "limit_mag", limitFromStar(star_mag, snr).toFixed(2));
-  const kind = /** @type {HTMLInputElement|null} */ (form.querySelector('input[data-choice="limit_kind"][value="5 sigma"]'));
-  if (kind) kind.checked = true;
+  chooseKind(form, "5 sigma");
   said.textContent = "put in as a 5 sigma limit";
   form.dispatchEvent(new Event("input"));
 }
@@ -81,8 +81,19 @@ function fromOneStar(form) {
   );
 }
 
-/** @param {Record<string, any>} values @param {HTMLElement} form */
-export function depthFields(values, form) {
+/** @param {HTMLElement} form @param {string} kind */
+function chooseKind(form, kind) {
+  const option = /** @type {HTMLInputElement|null} */ (form.querySelector(`input[data-choice="limit_kind"][value="${kind}"]`));
+  if (option) option.checked = true;
+}
+
+/** @param {Record<string, any>} values @param {HTMLElement} form @param {{instrument: number, typed: () => Record<string, any>}} about */
+export function depthFields(values, form, about) {
+  const takeEstimate = (/** @type {import("./depth_estimate.js").Estimate} */ { limit_mag }) => {
+    put(form, "limit_mag", limit_mag.toFixed(1));
+    chooseKind(form, "estimate");
+    form.dispatchEvent(new Event("input"));
+  };
   return element(
     "section",
     { class: "stack" },
@@ -90,6 +101,7 @@ export function depthFields(values, form) {
     field({ name: "limit_mag", label: "limiting magnitude", value: values.limit_mag, number: true, hint: values.limit_kind === "estimate" ? "our estimate: better yours, if you measured" : "empty: it counts as imaged, not as searched" }),
     choice({ name: "limit_kind", label: "what it means", value: values.limit_kind, options: LIMIT_KINDS }),
     fromOneStar(form),
+    estimateButton(form, about, takeEstimate),
   );
 }
 

@@ -1,18 +1,19 @@
 /** FITS files for a report: headers read here, shown in full before anything is sent. */
 
-import { HeaderTrouble, readHeader } from "../../fits/read_header.js";
+import { HeaderTrouble, readFrame } from "../../fits/read_header.js";
 import { element } from "../shell/element.js";
 import { fileDrop } from "../shell/file_drop.js";
 
-/** @typedef {{name: string, header: Record<string, string|number>|null, trouble: string}} ReadFile */
+/** @typedef {Record<string, string|number>} Header */
+/** @typedef {{name: string, header: Header|null, pictures: Header[], trouble: string}} ReadFile */
 
 /** @param {File} file @returns {Promise<ReadFile>} */
 async function readOne(file) {
   try {
-    return { name: file.name, header: await readHeader(file), trouble: "" };
+    return { name: file.name, ...(await readFrame(file)), trouble: "" };
   } catch (error) {
     if (!(error instanceof HeaderTrouble)) throw error;
-    return { name: file.name, header: null, trouble: error.message };
+    return { name: file.name, header: null, pictures: [], trouble: error.message };
   }
 }
 
@@ -24,15 +25,21 @@ export async function readFiles(files) {
   return read;
 }
 
-/** @param {ReadFile} file */
-function headerTable({ name, header, trouble }) {
-  if (!header) return element("p", { class: "trouble note" }, `${name}: ${trouble}`);
+/** @param {ReadFile} file @returns {HTMLElement[]} */
+function headerTables({ name, header, pictures, trouble }) {
+  if (!header) return [element("p", { class: "trouble note" }, `${name}: ${trouble}`)];
+  const more = pictures.map((picture, i) => headerTable(`picture ${i + 1} of ${pictures.length}`, picture, false));
+  return [headerTable(name, header, true), ...more];
+}
+
+/** @param {string} name @param {Header} header @param {boolean} isOpen */
+function headerTable(name, header, isOpen) {
   const rows = Object.entries(header).map(([keyword, value]) =>
     element("tr", {}, element("th", { scope: "row" }, keyword), element("td", {}, String(value))),
   );
   return element(
     "details",
-    { open: true, class: "header-shown" },
+    { open: isOpen, class: "header-shown" },
     element("summary", {}, `${name}: ${rows.length} header values`),
     element("table", { class: "header-table" }, element("tbody", {}, rows)),
   );
@@ -48,7 +55,7 @@ export function filesShown(files, onDrop) {
     "div",
     { class: "stack" },
     hasHeader ? element("p", { class: "small" }, PRIVACY) : null,
-    files.map(headerTable),
+    files.flatMap(headerTables),
     element("p", {}, element("button", { type: "button", onclick: onDrop }, "leave the file out, type instead")),
   );
 }

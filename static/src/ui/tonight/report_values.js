@@ -89,10 +89,10 @@ function optionalNumbers(typed, names) {
 /**
  * What is sent, and the names of fields that cannot be read.
  * @param {Record<string, any>} typed
- * @param {{instrument: number, claim: number|null, header: Record<string, any>|null, mid_time?: string}} about
+ * @param {{instrument: number, claim: number|null, header: Record<string, any>|null, pictures?: Record<string, any>[], mid_time?: string}} about
  *     mid_time: sets the header's own right
  */
-export function reportBody(typed, { instrument, claim, header, mid_time }) {
+export function reportBody(typed, { instrument, claim, header, pictures = [], mid_time }) {
   const frame = header ? { needed: {}, optional: {} } : typedFrame(typed);
   const numbers = optionalNumbers(typed, ["limit_mag", ...(typed.examined_way ? ["reference_mag"] : []), "saturation_mag"]);
   const all = { ...frame.needed, ...frame.optional, ...numbers };
@@ -100,6 +100,6 @@ export function reportBody(typed, { instrument, claim, header, mid_time }) {
   const examined = typed.examined_way ? { is_examined: true, examined_way: typed.examined_way } : { is_examined: false };
   const masks = typed.masks_saturated ? { masks_saturated: true } : {};
   const limit = typed.limit_mag ? { limit_kind: typed.limit_kind } : {};
-  const body = { instrument, ...(claim === null ? {} : { claim }), ...(header ? { header } : {}), ...(header && mid_time ? { mid_time } : {}), ...all, ...limit, ...examined, ...masks };
+  const body = { instrument, ...(claim === null ? {} : { claim }), ...(header ? { header } : {}), ...(header && pictures.length > 0 ? { pictures } : {}), ...(header && mid_time ? { mid_time } : {}), ...all, ...limit, ...examined, ...masks };
   return { body, unread };
 }

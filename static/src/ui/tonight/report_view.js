@@ -32,8 +32,13 @@ function bareShot(tile, kept, gear) {
   return { tile, ra_deg, dec_deg, width_deg, height_deg, exposure_s, n_exposures, standing: "alternative", claim: null, starts_at: then, ends_at: then, gain: null, reason: "", limit_forecast_mag: null };
 }
 
-/** What the answer says, in words. @param {{number: number, frame: any, searched: number, searched_before: number, imaged: number}} answer */
+/** What the answer says, in words. @param {{number: number, frame: any, searched: number, searched_before: number, imaged: number, notes?: string[]}} answer */
 export function answerWords(answer) {
+  return [countedWords(answer), ...(answer.notes ?? [])].join(" ");
+}
+
+/** @param {{number: number, frame: any, searched: number, searched_before: number}} answer */
+function countedWords(answer) {
   const { number, frame, searched, searched_before } = answer;
   if (!frame.is_examined) return `Frame ${number} counts as imaged. It counts as searched once somebody has looked at it.`;
   if (frame.m_eff === null || frame.m_eff === undefined) return `Frame ${number} counts as imaged. Without a limit it cannot count as searched.`;
@@ -140,10 +145,16 @@ export class ReportView {
       element("h2", {}, `Report a frame: ${where}`),
       byFile ? filesShown(this.files, forget) : frameDrop((files) => void this.take(files)),
       byFile ? null : element("section", { class: "stack" }, element("h3", {}, "Or by hand"), frameFields(values)),
-      depthFields(values, form),
+      depthFields(values, form, { instrument: Number(page.data.instrument), typed: () => this.told }),
       lookedFields(values),
       this.said,
     );
+  }
+
+  /** Position, time and exposure of the first file, for whoever asks before it is sent. */
+  get told() {
+    const [first] = this.files.filter(({ header }) => header !== null);
+    return first?.header ? typedFromHeader(first.header) : {};
   }
 
   /** @param {File[]} files */
@@ -166,7 +177,7 @@ export class ReportView {
     const header = part?.header ?? null;
     const middle = header && this.shift_h !== 0 ? headerMidTime(header) : null;
     const mid_time = middle === null ? undefined : new Date(middle + this.shift_h * HOUR_MS).toISOString();
-    return reportBody(readFields(this.form), { instrument, claim: this.shot?.claim ?? null, header, mid_time });
+    return reportBody(readFields(this.form), { instrument, claim: this.shot?.claim ?? null, header, pictures: part?.pictures ?? [], mid_time });
   }
 
   /** Local time for UT is the commonest error: the hours that would fit, one tap each. @param {number[]} shifts_h */
@@ -204,8 +215,11 @@ export class ReportView {
   async sendAll() {
     /** @type {any[]} */
     const answers = [];
+    /** @type {ReadFile|null} */
+    let sending = null;
     try {
       for (const part of this.parts) {
+        sending = part;
         answers.push(await this.sender(part).post(`${this.page.path}/frames`, this.bodyOf(part).body));
         // A file that was accepted is not sent again when a later one fails.
         if (part) this.files = this.files.filter((file) => file !== part);
@@ -214,6 +228,7 @@ export class ReportView {
     } catch (error) {
       showProblem(this.said, error, this.form);
       if (error instanceof Problem && Array.isArray(error.extras.fitting_shifts_h)) this.offerShifts(error.extras.fitting_shifts_h);
+      if (sending) this.said.prepend(element("p", {}, `${sending.name} was not accepted:`));
       if (answers.length > 0) this.said.prepend(element("p", {}, `${answers.length} of the files were accepted before this one.`));
     }
   }

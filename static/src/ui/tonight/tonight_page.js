@@ -175,7 +175,7 @@ class TonightPage {
     const now_ms = now().getTime();
     const dawn_ms = this.dawn;
     const darkens_ms = answer?.night?.dusk ? Date.parse(answer.night.dusk) : now_ms;
-    // The answer's darkness begins now when it is dark already.
+    // When it is dark already its dusk is past.
     const dusk_ms = darkens_ms > now_ms + 120_000 ? darkens_ms : null;
     const span = { from_ms: Math.min(now_ms, dusk_ms ?? now_ms) - 1_800_000, to_ms: (dawn_ms ?? now_ms + HALF_NIGHT_MS) + 1_800_000 };
     const said = answer?.curves?.[shot.tile] ?? [];

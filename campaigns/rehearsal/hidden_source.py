@@ -17,7 +17,7 @@ from skytiles.sphere import healpix_door
 
 LOOK_S = 3600.0
 SATURATION_WIDTH_MAG = 0.2
-# 50 % magnitude minus reported limit, by kind (DESIGN: the ledger's table of kinds).
+# 50 % magnitude minus reported limit, by kind (DEVELOPERS.md, the ledger exactly).
 LIMIT_SHIFT_MAG = {
     "50 %": 0.0,
     "5 sigma": 0.0,

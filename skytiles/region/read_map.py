@@ -14,7 +14,7 @@ from skytiles.sphere.solid_angle import STERADIAN_DEG2
 Ints = NDArray[np.int64]
 Floats = NDArray[np.float64]
 
-# DESIGN: a file of more than 2 GB is refused before it is read.
+# A file of more than 2 GB is refused before it is read.
 MAX_MAP_BYTES = 2_000_000_000
 GZIP = b"\x1f\x8b"
 _DISTANCES = ("DISTMU", "DISTSIGMA", "DISTNORM")

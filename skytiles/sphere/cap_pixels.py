@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 
 from skytiles.sphere import healpix_nested as nested
 from skytiles.sphere.cap_set import CapSet
-from skytiles.sphere.interleaved_bits import SPREAD_BITS
+from skytiles.sphere.interleaved_bits import SPREAD_BITS, SPREAD_ODD_BITS
 
 Ints = NDArray[np.int64]
 Floats = NDArray[np.float64]
@@ -257,12 +257,15 @@ def _expand(order: int, runs: _Runs, places: Ints) -> Ints:
     """NESTED numbers of all pixels of all runs, in order."""
     starts = np.cumsum(runs.lengths) - runs.lengths
     steps = np.arange(len(places))
-    xs = (runs.xs - starts).take(places) + steps
-    ys = (runs.ys + starts).take(places) - steps
+    xs = (runs.xs - starts).take(places)
+    xs += steps
+    ys = (runs.ys + starts).take(places)
+    ys -= steps
     bases = (runs.faces << 2 * order).take(places)
-    spread = SPREAD_BITS
     if order <= _TABLE_ORDER:
-        return np.asarray(bases + spread.take(xs) + (spread.take(ys) << 1))
+        bases += SPREAD_BITS.take(xs)
+        bases += SPREAD_ODD_BITS.take(ys)
+        return np.asarray(bases)
     return nested.nest_from_face(order, nested.FacePixels(bases >> 2 * order, xs, ys))
 
 

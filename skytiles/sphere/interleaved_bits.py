@@ -25,8 +25,10 @@ def _squeeze_table() -> Ints:
     return table
 
 
-# SPREAD_BITS[v] puts bit k of v at bit 2k; the squeeze table undoes it for 16 bits at a time.
+# SPREAD_BITS[v] puts bit k of v at bit 2k, SPREAD_ODD_BITS at bit 2k + 1; the squeeze table undoes
+# the first for 16 bits at a time.
 SPREAD_BITS = _spread_table()
+SPREAD_ODD_BITS = SPREAD_BITS << 1
 _SQUEEZED = _squeeze_table()
 
 

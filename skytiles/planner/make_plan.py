@@ -53,6 +53,9 @@ def make_plan(problem: PlanProblem, *, n_bound_steps: int = N_BOUND_STEPS) -> Pl
 
 
 def _bound(state: SearchState, expected: float, n_steps: int) -> float:
+    if state.problem.n_options == 0:
+        # Nothing is on offer: the empty plan is the best there is.
+        return expected
     bound = min(data_dependent_bound(state), _everything(state.problem))
     if expected >= GOOD_CERTIFICATE * bound:
         return bound

@@ -279,6 +279,11 @@ def test_reasons_say_what_is_the_matter(region, tiles):
     check(reasons.TOO_SHALLOW, {"instruments": [blind]})
 
 
+def test_without_an_option_the_empty_plan_is_the_best_possible(region, tiles):
+    _, result = plan_for(region, tiles, [])
+    assert (result.searched_expected, result.searched_bound, result.certificate) == (0.0, 0.0, 1.0)
+
+
 def test_reason_when_everything_has_been_searched(region, tiles):
     ledger = fresh_ledger(*region)
     ledger.add(

@@ -59,10 +59,12 @@ def test_an_older_python_is_told_which_ones_serve():
     assert "3.11, 3.12 or 3.13" in result.stderr
 
 
-def test_without_ensurepip_the_debian_package_is_named(monkeypatch):
+def test_without_ensurepip_the_debian_package_is_named(monkeypatch, tmp_path):
     monkeypatch.setitem(sys.modules, "ensurepip", None)
+    monkeypatch.setattr(environment, "VENV_PYTHON", tmp_path / "bin" / "python")
+    monkeypatch.setattr(environment.subprocess, "run", lambda *_, **__: pytest.fail("not asked"))
     with pytest.raises(SetUpError, match=r"apt install python3\.\d+-venv"):
-        environment._check_ensurepip()
+        environment._make_venv()
 
 
 @pytest.mark.parametrize(

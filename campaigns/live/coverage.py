@@ -64,7 +64,7 @@ class CoverageTeller:
             self._changed.clear()
             try:
                 await self._tell_news()
-            except Exception:
+            except Exception:  # outermost loop: the next change tries again
                 self.n_faults += 1
                 logger.exception("the coverage of %s cannot be told", self._campaign_id)
             # Leading edge: the first change went at once; the next waits its turn.

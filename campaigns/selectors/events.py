@@ -27,8 +27,3 @@ def list_events_since(campaign_id: str, since_seq: int) -> tuple[int, list[dict[
 def get_seq(campaign_id: str) -> int:
     """The number of the newest event."""
     return int(Campaign.objects.values_list("seq", flat=True).get(pk=campaign_id))
-
-
-def list_newest_seqs() -> dict[str, int]:
-    """The number of the newest event of every live campaign: what a hub compares with its own."""
-    return dict(Campaign.objects.exclude(status="closed").values_list("pk", "seq"))

@@ -182,24 +182,6 @@ def pixels_in_disc(order: int, *, ra_deg: float, dec_deg: float, radius_deg: flo
     return np.sort(pixels_inside(circle, order).pixels)
 
 
-def pixels_in_polygon(order: int, corners: ArrayLike) -> Ints:
-    """Pixels whose centre is inside a convex polygon of great circles.
-
-    Parameters
-    ----------
-    order : int    0..29
-    corners : (v, 3) float    unit vectors, counter-clockwise: inside on the left of each side
-
-    Returns
-    -------
-    (n,) int    NESTED, ascending
-
-    Source: definition.
-    """
-    polygon = CapSet.of_polygons(np.asarray(corners, dtype=np.float64)[None])
-    return np.sort(pixels_inside(polygon, order).pixels)
-
-
 def warm() -> None:
     """Touch what the first request would otherwise wait for.
 
